@@ -1,0 +1,23 @@
+import type { OpenFile } from "../../core/formats/dataset.ts";
+import { openFile } from "../../core/formats/open-file.ts";
+import { openFileSource } from "./file-source.ts";
+import type { BatchFile } from "./thread-crew.ts";
+
+/** @throws DataError in words naming the file. */
+export async function openBatchFile({ path, corrections }: BatchFile): Promise<OpenFile> {
+  const source = await openFileSource(path);
+  try {
+    const file = await openFile(source, corrections);
+    return {
+      contents: file.contents,
+      read: (key, request) => file.read(key, request),
+      async close() {
+        await file.close();
+        await source.close();
+      },
+    };
+  } catch (error) {
+    await source.close();
+    throw error;
+  }
+}

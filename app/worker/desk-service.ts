@@ -1,0 +1,218 @@
+import type { FittedBackground } from "../../core/background/fit.ts";
+import type { BackgroundSpec } from "../../core/background/spec.ts";
+import { DataError } from "../../core/errors.ts";
+import type { IndexRange } from "../../core/field/axes.ts";
+import type { Correction, FieldDescription, FileContents, OpenFile } from "../../core/formats/dataset.ts";
+import { BackgroundPasses, passJobs } from "../../core/recipe/background-passes.ts";
+import type { Crew } from "../../core/recipe/crew.ts";
+import type { CrewFile } from "../../core/recipe/crew-line.ts";
+import { runRecipe } from "../../core/recipe/engine.ts";
+import { checkedRecipe } from "../../core/recipe/read-recipe.ts";
+import type { Recipe } from "../../core/recipe/recipe.ts";
+import { slabWithBackground } from "../../core/recipe/slab-background.ts";
+import type {
+  Desk,
+  FieldPlace,
+  Frame,
+  OpenReport,
+  Refusal,
+  Ribbon,
+  RunOutcome,
+  SourceDescription,
+  TaskProgress,
+} from "./desk.ts";
+import { FrameCache } from "./frame-cache.ts";
+import { bandRibbon } from "./ribbon.ts";
+import { type Task, Tasks } from "./tasks.ts";
+
+/** What a worker needs to open a file. */
+export interface DeskFile {
+  readonly source: SourceDescription;
+  readonly corrections: readonly Correction[];
+}
+
+export interface DeskParts {
+  readonly open: (file: DeskFile) => Promise<OpenFile>;
+  /** Workers that open the same files for themselves. */
+  readonly crew: Crew & { setFiles(files: readonly CrewFile<DeskFile>[]): void };
+  readonly program: string;
+}
+
+interface Held {
+  readonly id: number;
+  readonly source: SourceDescription;
+  readonly file: OpenFile;
+  readonly corrections: readonly Correction[];
+}
+
+function sourceName(source: SourceDescription): string {
+  if (source.kind === "file") return source.file.name;
+  return source.kind === "range" ? source.name : source.path;
+}
+
+/** The desk itself, free of any worker's messages: files, frames, ribbons and recipes. */
+export class DeskService implements Desk {
+  readonly #parts: DeskParts;
+  readonly #held = new Map<string, Held>();
+  readonly #frames = new FrameCache();
+  readonly #tasks = new Tasks();
+  #passes = new BackgroundPasses();
+  #counter = 0;
+
+  constructor(parts: DeskParts) {
+    this.#parts = parts;
+  }
+
+  async open(sources: readonly SourceDescription[], corrections: readonly Correction[]): Promise<OpenReport> {
+    const opened: FileContents[] = [];
+    const refused: Refusal[] = [];
+    for (const source of sources) {
+      try {
+        opened.push(await this.#hold(source, corrections));
+      } catch (error) {
+        refused.push({ file: sourceName(source), words: error instanceof Error ? error.message : String(error) });
+      }
+    }
+    this.#tellCrew();
+    return { opened, refused };
+  }
+
+  async correct(file: string, corrections: readonly Correction[]): Promise<FileContents> {
+    const contents = await this.#hold(this.#heldFile(file).source, corrections);
+    this.#tellCrew();
+    return contents;
+  }
+
+  async close(file: string): Promise<void> {
+    const held = this.#held.get(file);
+    if (held === undefined) return;
+    this.#held.delete(file);
+    this.#forget(file);
+    this.#tellCrew();
+    await held.file.close();
+  }
+
+  prepareBackground(place: FieldPlace, background: BackgroundSpec, task: number): Promise<void> {
+    return this.#tasks.run(task, async (running) => {
+      await this.#fitted(place, background, running);
+    });
+  }
+
+  async frame(place: FieldPlace, time: number, background: BackgroundSpec): Promise<Frame> {
+    const { file, field } = this.#place(place);
+    if (!(Number.isInteger(time) && time >= 0 && time < field.steps.values.length))
+      throw new DataError("ShapeError", `${place.key} has no step ${time}; it has ${field.steps.values.length}.`);
+    const frame = this.#frames.frame(file, field, place, time);
+    const fitted = this.#fittedAlready(place, field, background);
+    const values = frame.then((held) => held.slice());
+    if (fitted === null && background.kind !== "running-mean") return { values: await values, background: null };
+    const rows: IndexRange = [0, field.grid.lat.length];
+    const both = await slabWithBackground(
+      file,
+      field,
+      { times: [time, time + 1], levels: this.#levels(place, field), rows },
+      background,
+      fitted ?? undefined,
+    );
+    return { values: await values, background: both.background === null ? null : Float32Array.from(both.background) };
+  }
+
+  ribbon(
+    place: FieldPlace,
+    band: readonly [number, number],
+    times: IndexRange,
+    background: BackgroundSpec,
+    task: number,
+  ): Promise<Ribbon> {
+    return this.#tasks.run(task, async (running) => {
+      const { file, field } = this.#place(place);
+      const fitted = await this.#fitted(place, background, running);
+      return bandRibbon(file, field, this.#levels(place, field), band, times, background, fitted, running);
+    });
+  }
+
+  runRecipe(recipe: Recipe, task: number): Promise<RunOutcome> {
+    return this.#tasks.run(task, (running) =>
+      runRecipe(checkedRecipe(recipe), this.#contents(), this.#parts.crew, {
+        program: this.#parts.program,
+        signal: running.signal,
+        passes: this.#passes,
+        progress: ({ title, done, secondsLeft }) => running.report(title, done, secondsLeft),
+      }),
+    );
+  }
+
+  async onProgress(callback: (progress: TaskProgress) => void): Promise<void> {
+    this.#tasks.listen(callback);
+  }
+
+  async cancel(task: number): Promise<void> {
+    this.#tasks.cancel(task);
+  }
+
+  #contents(): FileContents[] {
+    return [...this.#held.values()].map(({ file }) => file.contents);
+  }
+
+  /** Open a file and put it in the place of an earlier one of its name, which stays if this one does not open. */
+  async #hold(source: SourceDescription, corrections: readonly Correction[]): Promise<FileContents> {
+    const file = await this.#parts.open({ source, corrections });
+    const name = file.contents.file;
+    const earlier = this.#held.get(name);
+    this.#held.set(name, { id: ++this.#counter, source, file, corrections });
+    this.#forget(name);
+    await earlier?.file.close();
+    return file.contents;
+  }
+
+  #forget(file: string): void {
+    this.#frames.forget(file);
+    this.#passes.forget(file);
+  }
+
+  #tellCrew(): void {
+    this.#parts.crew.setFiles(
+      [...this.#held.values()].map(({ id, source, corrections }) => ({ id, source: { source, corrections } })),
+    );
+  }
+
+  #heldFile(name: string): Held {
+    const held = this.#held.get(name);
+    if (held === undefined) throw new DataError("NotFoundError", `${name} is not open. Open it again.`);
+    return held;
+  }
+
+  /** @throws NotFoundError for a field or a level that is not there. */
+  #place(place: FieldPlace): { file: OpenFile; field: FieldDescription } {
+    for (const { file } of this.#held.values()) {
+      const field = file.contents.fields.find((candidate) => candidate.key === place.key);
+      if (field === undefined) continue;
+      if (place.level !== 0 && field.levels?.[place.level] === undefined)
+        throw new DataError("NotFoundError", `${place.key} has no level number ${place.level}.`);
+      return { file, field };
+    }
+    throw new DataError("NotFoundError", `${place.key} is not open. Open its file again.`);
+  }
+
+  #levels({ level }: FieldPlace, field: FieldDescription): readonly number[] | null {
+    return field.levels === null ? null : [level];
+  }
+
+  #fittedAlready(place: FieldPlace, field: FieldDescription, spec: BackgroundSpec): FittedBackground | null {
+    return this.#passes.held(field, field.levels === null ? null : place.level, [0, field.grid.lat.length], spec);
+  }
+
+  async #fitted(place: FieldPlace, spec: BackgroundSpec, task: Task): Promise<FittedBackground | null> {
+    const { field } = this.#place(place);
+    const rows: IndexRange = [0, field.grid.lat.length];
+    const level = field.levels === null ? null : place.level;
+    const steps = passJobs(field, level, rows, spec).length;
+    const started = Date.now();
+    let done = 0;
+    return this.#passes.fitted(field, [level], rows, rows, spec, this.#parts.crew, task.signal, () => {
+      done += 1;
+      const seconds = (Date.now() - started) / 1000;
+      task.report("Fitting the background", done / steps, (seconds * (steps - done)) / done);
+    });
+  }
+}

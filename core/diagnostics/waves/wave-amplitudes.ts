@@ -1,0 +1,82 @@
+import { RADIANS_PER_DEGREE } from "../../constants.ts";
+import { reasonCode } from "../../field/reasons.ts";
+import type { ResultVariable } from "../entry.ts";
+import { isNyquist, ridgeLongitude, waveAmplitude } from "./coefficients.ts";
+import type { WaveFrame } from "./wave-frame.ts";
+
+const EACH = ["time", "level", "row", "wavenumber"] as const;
+const MISSING = reasonCode("missing");
+const SMALL = reasonCode("small");
+
+/** Amplitude, ridge longitude, share of the variance and phase of each wave at each step. */
+export function amplitudeVariables(frame: WaveFrame, c: Float64Array, variance: Float64Array): ResultVariable[] {
+  const { waves, nLon, choice } = frame;
+  const units = frame.series.units;
+  const kept = choice.most + 1;
+  const rows = variance.length;
+  const size = rows * waves.length;
+  const amplitude = frame.array(size);
+  const ridge = frame.array(size);
+  const share = frame.array(size);
+  const phase = frame.array(size);
+  const reasons = new Uint8Array(size);
+  const shareReasons = new Uint8Array(size);
+  for (let r = 0, at = 0; r < rows; r++) {
+    const total = variance[r] as number;
+    for (const k of waves) {
+      const from = 2 * (r * kept + k);
+      const re = c[from] as number;
+      const im = c[from + 1] as number;
+      const a = waveAmplitude(re, im, k, nLon);
+      amplitude[at] = a;
+      ridge[at] = ridgeLongitude(re, im, k);
+      share[at] = (isNyquist(k, nLon) ? a * a : (a * a) / 2) / total;
+      phase[at] = Math.atan2(im, re) / RADIANS_PER_DEGREE;
+      if (Number.isNaN(a)) reasons[at] = MISSING;
+      // A row of one value (a pole) has no variance to share.
+      shareReasons[at] = Number.isNaN(a) ? MISSING : total > 0 ? 0 : SMALL;
+      at += 1;
+    }
+  }
+  return [
+    frame.variable("amplitude", "Amplitude", units, EACH, amplitude, reasons),
+    frame.variable("ridge_longitude", "Ridge longitude", "degrees_east", EACH, ridge, reasons),
+    frame.variable("variance_share", "Share of the variance along the circle", "1", EACH, share, shareReasons),
+    frame.variable("phase", "Phase, the argument of the coefficient", "degrees", EACH, phase, reasons),
+  ];
+}
+
+/** Incoherent band: means over the rows of amplitude and of variance; phases do not count, so there is no ridge. */
+export function incoherentVariables(frame: WaveFrame, c: Float64Array, variance: Float64Array): ResultVariable[] {
+  const { waves, nLon, choice, weights } = frame;
+  const kept = choice.most + 1;
+  const nRows = weights.length;
+  const steps = variance.length / nRows;
+  const size = steps * waves.length;
+  const amplitude = frame.array(size);
+  const share = frame.array(size);
+  const reasons = new Uint8Array(size);
+  for (let s = 0, at = 0; s < steps; s++) {
+    for (const k of waves) {
+      let a = 0;
+      let own = 0;
+      let total = 0;
+      for (let r = 0; r < nRows; r++) {
+        const w = weights[r] as number;
+        const from = 2 * ((s * nRows + r) * kept + k);
+        const size1 = waveAmplitude(c[from] as number, c[from + 1] as number, k, nLon);
+        a += w * size1;
+        own += w * (isNyquist(k, nLon) ? size1 * size1 : (size1 * size1) / 2);
+        total += w * (variance[s * nRows + r] as number);
+      }
+      amplitude[at] = a;
+      share[at] = own / total;
+      if (Number.isNaN(a)) reasons[at] = MISSING;
+      at += 1;
+    }
+  }
+  return [
+    frame.variable("amplitude", "Mean amplitude of the band's rows", frame.series.units, EACH, amplitude, reasons),
+    frame.variable("variance_share", "Share of the variance along the circles", "1", EACH, share, reasons),
+  ];
+}

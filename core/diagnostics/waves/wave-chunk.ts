@@ -1,0 +1,94 @@
+import { nearestColumn, nearestRow } from "../../grid/rows.ts";
+import type { ChunkInput, ChunkPart, Series } from "../entry.ts";
+import { rowCoefficients } from "./coefficients.ts";
+import { bandWeights, type WaveChoice } from "./wave-options.ts";
+
+/** Rows of each step and level joined to one, by area weight; a missing value in any row is missing in the mean. */
+function bandMean(x: Float64Array, steps: number, nRows: number, nLon: number, weights: Float64Array): Float64Array {
+  const out = new Float64Array(steps * nLon);
+  for (let s = 0; s < steps; s++) {
+    for (let r = 0; r < nRows; r++) {
+      const w = weights[r] as number;
+      const from = (s * nRows + r) * nLon;
+      const into = s * nLon;
+      for (let i = 0; i < nLon; i++) out[into + i] = (out[into + i] as number) + w * (x[from + i] as number);
+    }
+  }
+  return out;
+}
+
+function difference(x: Float64Array, y: Float64Array): Float64Array {
+  const out = new Float64Array(x.length);
+  for (let i = 0; i < out.length; i++) out[i] = (x[i] as number) - (y[i] as number);
+  return out;
+}
+
+/** Departure from [x] where no background is; the row's own values otherwise: what the shares of a point add up to. */
+function pointRow(x: Float64Array, background: Float64Array | undefined): Float64Array {
+  return background === undefined ? x : difference(x, background);
+}
+
+/** Coefficients, and what is made from whole rows, of the chunk's own steps. */
+export function waveChunk(input: ChunkInput, series: Series, choice: WaveChoice): ChunkPart {
+  const { lat, lon } = series.grid;
+  const nLon = lon.length;
+  const slab = input.slabs.field;
+  const [, nLevel, nRowsRead] = slab?.shape ?? [0, 0, 0, 0];
+  const perStep = nLevel * nRowsRead * nLon;
+  const skip = (input.times[0] - input.loaded[0]) * perStep;
+  const size = (input.times[1] - input.times[0]) * perStep;
+  const own = (array: Float64Array): Float64Array => array.subarray(skip, skip + size);
+  const field = own(slab?.data ?? new Float64Array(0));
+  const given = input.backgrounds.field;
+  const background = given === undefined ? undefined : own(given);
+  const steps = size / (nRowsRead * nLon);
+
+  // Rows that the results speak of. A plan with a point may read more rows than the band has.
+  const readFrom = planRows(series, choice)[0];
+  const pick = (array: Float64Array): Float64Array => {
+    const bandRows = choice.rows[1] - choice.rows[0];
+    if (bandRows === nRowsRead) return array;
+    const out = new Float64Array(steps * bandRows * nLon);
+    for (let s = 0; s < steps; s++) {
+      const from = (s * nRowsRead + choice.rows[0] - readFrom) * nLon;
+      out.set(array.subarray(from, from + bandRows * nLon), s * bandRows * nLon);
+    }
+    return out;
+  };
+  const nRows = choice.rows[1] - choice.rows[0];
+  const joined = (array: Float64Array): Float64Array =>
+    choice.band !== null && choice.coherent
+      ? bandMean(array, steps, nRows, nLon, bandWeights(lat, choice.rows))
+      : array;
+  const x = joined(pick(field));
+  const clim = background === undefined ? undefined : joined(pick(background));
+  const subject = choice.ofAnomaly && clim !== undefined ? difference(x, clim) : x;
+  const { c, variance } = rowCoefficients(subject, lon, choice.most);
+  const part: Record<string, Float64Array<ArrayBuffer>> = { c, variance };
+  if (clim !== undefined) {
+    part.background = rowCoefficients(clim, lon, choice.most).c;
+    if (!choice.ofAnomaly) part.anomaly = rowCoefficients(difference(x, clim), lon, choice.most).c;
+  }
+  if (choice.point !== null) {
+    const row = nearestRow(lat, choice.point[0]) - readFrom;
+    const column = nearestColumn(lon, choice.point[1]);
+    const rows = new Float64Array(steps * nLon);
+    const values = pointRow(field, choice.ofAnomaly ? background : undefined);
+    const at = new Float64Array(steps);
+    for (let s = 0; s < steps; s++) {
+      const from = (s * nRowsRead + row) * nLon;
+      rows.set(values.subarray(from, from + nLon), s * nLon);
+      at[s] = values[from + column] as number;
+    }
+    part.pointC = rowCoefficients(rows, lon, choice.waves[1]).c;
+    part.pointValue = at;
+  }
+  return part;
+}
+
+/** Rows to read: the band's, and the point's. */
+export function planRows(series: Series, choice: WaveChoice): readonly [number, number] {
+  if (choice.point === null) return choice.rows;
+  const row = nearestRow(series.grid.lat, choice.point[0]);
+  return [Math.min(row, choice.rows[0]), Math.max(row + 1, choice.rows[1])];
+}

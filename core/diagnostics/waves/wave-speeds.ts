@@ -1,0 +1,148 @@
+import { EARTH_RADIUS, RADIANS_PER_DEGREE, SECONDS_PER_DAY } from "../../constants.ts";
+import { reasonCode } from "../../field/reasons.ts";
+import type { ResultVariable } from "../entry.ts";
+import { isNyquist } from "./coefficients.ts";
+import { type Drift, lagOneDrift, phaseDrift, stationarityRatio } from "./drift.ts";
+import type { WaveFrame } from "./wave-frame.ts";
+
+const WHOLE = ["level", "row", "wavenumber"] as const;
+const EACH = ["time", "level", "row", "wavenumber"] as const;
+const NO_TIME = reasonCode("no_time");
+const AMBIGUOUS = reasonCode("ambiguous");
+const SMALL = reasonCode("small");
+const MISSING = reasonCode("missing");
+const NOTHING: Drift = { speed: Number.NaN, error: Number.NaN, reason: NO_TIME };
+/** Days; times in hours stored as float64 days round off far below it. */
+const STEP_TOLERANCE = 1e-6;
+/** A wave with less of the variance than this, over the days of a drift, has no drift worth telling. */
+export const LEAST_SHARE = 0.005;
+
+/** Days from step to step, or null where they are uneven. */
+function evenStepOf(days: Float64Array): number | null {
+  if (days.length < 2) return null;
+  const step = ((days[days.length - 1] as number) - (days[0] as number)) / (days.length - 1);
+  for (let i = 1; i < days.length; i++)
+    if (Math.abs((days[i] as number) - (days[i - 1] as number) - step) > STEP_TOLERANCE) return null;
+  return step;
+}
+
+/** Speeds over all steps, and how far each wave stands still. `notes` takes a sentence where something is left out. */
+export function speedVariables(frame: WaveFrame, c: Float64Array, notes: string[]): ResultVariable[] {
+  const { waves, nLevel, nRow, nTime, choice, series, nLon } = frame;
+  const isTime = series.steps.kind === "time";
+  const kept = choice.most + 1;
+  const stride = 2 * nLevel * nRow * kept;
+  const size = nLevel * nRow * waves.length;
+  const [speed, error, speedMs, lag, ratio] = Array.from({ length: 5 }, () => new Float64Array(size)) as [
+    Float64Array,
+    Float64Array,
+    Float64Array,
+    Float64Array,
+    Float64Array,
+  ];
+  const speedReasons = new Uint8Array(size);
+  const lagReasons = new Uint8Array(size);
+  const ratioReasons = new Uint8Array(size);
+  const days = frame.days;
+  const step = evenStepOf(days);
+  if (!isTime)
+    notes.push(`The record steps along "${series.steps.name}", which is no time: there are no phase speeds.`);
+  else if (step === null && nTime > 1) notes.push("The steps are not evenly spaced: there is no lag-one speed.");
+  for (let p = 0, at = 0; p < nLevel * nRow; p++) {
+    const metres =
+      EARTH_RADIUS * Math.cos((choice.latitudes[p % nRow] as number) * RADIANS_PER_DEGREE) * RADIANS_PER_DEGREE;
+    for (const k of waves) {
+      const shift = 2 * (p * kept + k);
+      // The Nyquist wave has no phase: its crests can only stand on the columns or between them.
+      const usable = isTime && !isNyquist(k, nLon);
+      const drift = usable ? phaseDrift(c, stride, shift, days, 0, nTime, k, choice.floor) : NOTHING;
+      const lagOne = usable && step !== null ? lagOneDrift(c, stride, shift, 0, nTime, k, step) : NOTHING;
+      speed[at] = drift.speed;
+      error[at] = drift.error;
+      speedMs[at] = (drift.speed * metres) / SECONDS_PER_DAY;
+      lag[at] = lagOne.speed;
+      ratio[at] = stationarityRatio(c, stride, shift, 0, nTime);
+      speedReasons[at] = drift.reason;
+      lagReasons[at] = lagOne.reason;
+      ratioReasons[at] = Number.isNaN(ratio[at] as number) ? MISSING : 0;
+      at += 1;
+    }
+  }
+  return [
+    frame.variable("phase_speed", "Phase speed, eastward", "degrees_east day-1", WHOLE, speed, speedReasons),
+    frame.variable(
+      "phase_speed_error",
+      "Standard error of the phase speed",
+      "degrees_east day-1",
+      WHOLE,
+      error,
+      speedReasons,
+    ),
+    frame.variable(
+      "phase_speed_ms",
+      "Phase speed at the row's latitude, eastward",
+      "m s-1",
+      WHOLE,
+      speedMs,
+      speedReasons,
+    ),
+    frame.variable(
+      "lag_one_speed",
+      "Phase speed from one step to the next",
+      "degrees_east day-1",
+      WHOLE,
+      lag,
+      lagReasons,
+    ),
+    frame.variable("stationarity_ratio", "Stationarity ratio", "1", WHOLE, ratio, ratioReasons),
+  ];
+}
+
+/** Drift at each step from the days up to it, as one sees it on the day. */
+export function driftVariables(frame: WaveFrame, c: Float64Array, variance: Float64Array): ResultVariable[] {
+  const { waves, nLevel, nRow, nTime, choice, series, nLon } = frame;
+  const isTime = series.steps.kind === "time";
+  const kept = choice.most + 1;
+  const places = nLevel * nRow;
+  const stride = 2 * places * kept;
+  const size = nTime * places * waves.length;
+  const speed = frame.array(size);
+  const error = frame.array(size);
+  const reasons = new Uint8Array(size);
+  const days = frame.days;
+  let from = 0;
+  for (let t = 0, at = 0; t < nTime; t++) {
+    while ((days[t] as number) - (days[from] as number) > choice.driftDays + STEP_TOLERANCE) from += 1;
+    for (let p = 0; p < places; p++) {
+      let total = 0;
+      for (let s = from; s <= t; s++) total += variance[s * places + p] as number;
+      for (const k of waves) {
+        const shift = 2 * (p * kept + k);
+        let drift =
+          isTime && !isNyquist(k, nLon) ? phaseDrift(c, stride, shift, days, from, t + 1, k, choice.floor) : NOTHING;
+        let own = 0;
+        for (let s = from; s <= t; s++) {
+          const i = s * stride + shift;
+          own += 2 * ((c[i] as number) ** 2 + (c[i + 1] as number) ** 2);
+        }
+        const valued = drift.reason === 0 || drift.reason === AMBIGUOUS;
+        if (valued && own < LEAST_SHARE * total) drift = { speed: Number.NaN, error: Number.NaN, reason: SMALL };
+        speed[at] = drift.speed;
+        error[at] = drift.error;
+        reasons[at] = drift.reason;
+        at += 1;
+      }
+    }
+  }
+  return [
+    frame.variable(
+      "drift",
+      `Drift over the last ${choice.driftDays} days, eastward`,
+      "degrees_east day-1",
+      EACH,
+      speed,
+      reasons,
+    ),
+    frame.variable("drift_error", "Standard error of the drift", "degrees_east day-1", EACH, error, reasons),
+  ];
+}

@@ -1,0 +1,51 @@
+import { DataError } from "../errors.ts";
+import type { IndexRange, StepAxis } from "./axes.ts";
+import { daysOfText } from "./calendar.ts";
+import { stepText } from "./step-text.ts";
+
+const HALF_SECOND = 0.5 / 86_400; // days; times in a file are rounded that much at worst
+const DAY_ONLY = /^\s*[+-]?\d{1,6}-\d{1,2}-\d{1,2}\s*$/;
+
+/** The end as the axis counts: a number on a record, days on a time axis. */
+function axisValue(end: string | number, steps: StepAxis, which: string): number {
+  if (steps.kind === "time" && typeof end === "string") return daysOfText(end, steps.calendar);
+  const value = typeof end === "number" ? end : Number(end.trim() === "" ? Number.NaN : end);
+  if (steps.kind === "record" && Number.isFinite(value)) return value;
+  throw new DataError(
+    "RecipeError",
+    steps.kind === "time"
+      ? `period: ${which} is ${end}, but the steps are times; write a date like "2001-02-09"`
+      : `period: ${which} is ${JSON.stringify(end)}, but the steps are numbers of "${steps.name}" and no times`,
+  );
+}
+
+/**
+ * The steps of a period, both ends included; an end that is a day without an hour includes the whole day.
+ *
+ * @throws RecipeError if the period cannot be read, runs backwards, or holds no step; MetadataError for no date.
+ */
+export function stepsOfPeriod(
+  steps: StepAxis,
+  period: readonly [string | number, string | number] | undefined,
+): IndexRange {
+  const n = steps.values.length;
+  if (n === 0) throw new DataError("RecipeError", "the field has no steps");
+  if (period === undefined) return [0, n];
+  const isTime = steps.kind === "time";
+  const from = axisValue(period[0], steps, "the first");
+  const to = axisValue(period[1], steps, "the last");
+  if (from > to)
+    throw new DataError("RecipeError", `period: ${period[0]} comes after ${period[1]}; the earlier comes first`);
+  const isWholeDay = isTime && typeof period[1] === "string" && DAY_ONLY.test(period[1]);
+  const slack = isTime ? HALF_SECOND : 0;
+  const first = steps.values.findIndex((value) => value >= from - slack);
+  const last = steps.values.findLastIndex((value) => (isWholeDay ? value < to + 1 - slack : value <= to + slack));
+  if (first < 0 || last < first) {
+    const ends = `${stepText(steps, 0)} to ${stepText(steps, n - 1)}`;
+    throw new DataError(
+      "RecipeError",
+      `period: no step lies from ${period[0]} to ${period[1]}; the record runs ${ends}`,
+    );
+  }
+  return [first, last + 1];
+}

@@ -1,0 +1,13 @@
+/** Where bytes come from: a File in the window, a file handle in batch, range requests to the local host. */
+export interface ByteSource {
+  /** File name as the user knows it; used in every message. */
+  readonly name: string;
+  /** Bytes in all. */
+  readonly size: number;
+  /**
+   * Exactly `length` bytes from `offset`, in a buffer of their own.
+   *
+   * @throws FormatError if the range is not inside the source, or fewer bytes arrive.
+   */
+  read(offset: number, length: number): Promise<Uint8Array<ArrayBuffer>>;
+}

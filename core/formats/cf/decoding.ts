@@ -1,0 +1,60 @@
+import type { StoredVariable } from "../variable-store.ts";
+import { numbersOf, textOf } from "./attributes.ts";
+
+/** How stored numbers become values: missing ones are known as they stand in the file, then value = stored · scale + offset. */
+export interface Decoding {
+  readonly missing: readonly number[];
+  readonly least: number;
+  readonly most: number;
+  /** Added to negative stored numbers (`_Unsigned`); 0 = none. */
+  readonly wrap: number;
+  readonly scale: number;
+  readonly offset: number;
+}
+
+const BITS = { int8: 8, int16: 16, int32: 32 } as const;
+/** Values that the netCDF library writes where nothing was written (netcdf.h, NC_FILL_*); bytes have none. */
+const DEFAULT_FILL: Readonly<Record<string, number>> = {
+  int16: -32_767,
+  int32: -2_147_483_647,
+  float32: 9.969209968386869e36,
+  float64: 9.969209968386869e36,
+  uint16: 65_535,
+  uint32: 4_294_967_295,
+};
+
+/** Read from a variable's attributes as the CF conventions (2.5.1, 8.1) and the NetCDF Users Guide (appendix A) say. */
+export function decodingOf(variable: StoredVariable): Decoding {
+  const { attributes, type } = variable;
+  const own = numbersOf(attributes, "_FillValue");
+  const fallback = DEFAULT_FILL[type];
+  const fill = own.length > 0 || fallback === undefined ? own : [fallback];
+  const unsigned = textOf(attributes, "_Unsigned")?.toLowerCase() === "true" && type in BITS;
+  const range = numbersOf(attributes, "valid_range");
+  return {
+    // A fill value of NaN on whole numbers never matches, and on real ones NaN is missing anyway.
+    missing: [...fill, ...numbersOf(attributes, "missing_value")].filter((value) => !Number.isNaN(value)),
+    least: range[0] ?? numbersOf(attributes, "valid_min")[0] ?? Number.NEGATIVE_INFINITY,
+    most: range[1] ?? numbersOf(attributes, "valid_max")[0] ?? Number.POSITIVE_INFINITY,
+    wrap: unsigned ? 2 ** BITS[type as keyof typeof BITS] : 0,
+    scale: numbersOf(attributes, "scale_factor")[0] ?? 1,
+    offset: numbersOf(attributes, "add_offset")[0] ?? 0,
+  };
+}
+
+/** Decode in place; missing → NaN. @returns `stored`. */
+export function decodeInPlace(stored: Float64Array, how: Decoding): Float64Array {
+  const { missing, least, most, wrap, scale, offset } = how;
+  const [a = Number.NaN, b = Number.NaN] = missing;
+  const more = missing.length > 2 ? new Set(missing) : null;
+  for (let i = 0; i < stored.length; i++) {
+    let x = stored[i] as number;
+    if (x === a || x === b || more?.has(x)) {
+      stored[i] = Number.NaN;
+      continue;
+    }
+    if (wrap !== 0 && x < 0) x += wrap;
+    stored[i] = x >= least && x <= most ? x * scale + offset : Number.NaN;
+  }
+  return stored;
+}

@@ -1,0 +1,48 @@
+import { DataError } from "../../errors.ts";
+import type { Levels } from "../../field/axes.ts";
+import { acceptedSpellings, conversion } from "../../units/units.ts";
+import type { StoredVariable, VariableStore } from "../variable-store.ts";
+import { longName, numbersOf, textOf } from "./attributes.ts";
+import { axisValues } from "./step-axis.ts";
+
+/** Pressures of a level axis, hPa. @throws MetadataError if it is no pressure: such a field is left out, with the reason. */
+export async function levelAxis(
+  store: VariableStore,
+  name: string,
+  variable: StoredVariable | undefined,
+): Promise<Float64Array> {
+  const units = variable === undefined ? "" : (textOf(variable.attributes, "units") ?? "");
+  const found = conversion("pressure", units);
+  if (variable === undefined || found === null)
+    throw new DataError(
+      "MetadataError",
+      `its levels (${name}) are in ${units === "" ? "no stated units" : `"${units}"`}, not in a pressure (${acceptedSpellings("pressure")})`,
+    );
+  const values = await axisValues(store, variable);
+  return values.map((value) => Math.round(value * found.factor * 1e9) / 1e9);
+}
+
+/** The pressure of a field without a level axis: a scalar coordinate, else its attributes, else its name. */
+export async function statedLevel(store: VariableStore, variable: StoredVariable): Promise<Levels> {
+  const named = (textOf(variable.attributes, "coordinates") ?? "").split(/\s+/);
+  for (const candidate of store.variables) {
+    const scalar =
+      candidate.shape.length === 0 ||
+      (candidate.shape.length === 1 && candidate.shape[0] === 1 && candidate.dims[0] !== candidate.name);
+    if (!scalar || !named.includes(candidate.name) || candidate.type === "char") continue;
+    const found = conversion("pressure", textOf(candidate.attributes, "units") ?? "");
+    if (found === null) continue;
+    const [value] = await axisValues(store, candidate);
+    if (value !== undefined && Number.isFinite(value)) return Float64Array.of(value * found.factor);
+  }
+  for (const attribute of ["level", "pressure", "pressure_level"]) {
+    const [value] = numbersOf(variable.attributes, attribute);
+    if (value !== undefined && value >= 1 && value <= 1100) return Float64Array.of(value);
+  }
+  const words = `${longName(variable)} ${textOf(variable.attributes, "level_desc") ?? ""} ${textOf(variable.attributes, "level") ?? ""}`;
+  const inWords = /(\d{1,4}(?:\.\d+)?)[\s-]*(hPa|mb|mbar|millibars?)\b/i.exec(words);
+  if (inWords !== null) return Float64Array.of(Number(inWords[1]));
+  const inName = /^[a-z]+_?(\d{2,4})(?:hpa|mb)?$/i.exec(variable.name);
+  const level = Number(inName?.[1]);
+  return level >= 10 && level <= 1000 ? Float64Array.of(level) : null;
+}

@@ -1,0 +1,68 @@
+import type { Grid, IndexRange, Levels, StepAxis } from "../field/axes.ts";
+import type { Quantity } from "../field/quantity.ts";
+import type { Slab } from "../field/slab.ts";
+
+/** One field that a file holds, as it was understood. Plain data: it crosses worker boundaries and stands in `--list`. */
+export interface FieldDescription {
+  /** `file name/variable`; unique among what is open. */
+  readonly key: string;
+  readonly file: string;
+  readonly variable: string;
+  readonly longName: string;
+  /** null: not recognised; the user may say what it is. */
+  readonly quantity: Quantity | null;
+  /** Why it was taken for that: "standard_name is geopotential", "units m s-1 and name u", "you said so". */
+  readonly why: string;
+  /** Units in the file and after conversion; equal for an unrecognised field. */
+  readonly unitsInFile: string;
+  readonly units: string;
+  readonly grid: Grid;
+  readonly steps: StepAxis;
+  readonly levels: Levels;
+}
+
+/** A variable that is no usable field, and why. */
+export interface LeftOut {
+  readonly file: string;
+  readonly variable: string;
+  readonly why: string;
+}
+
+/** What the user said about a variable that could not be recognised, or was recognised wrongly. Lives in the case. */
+export interface Correction {
+  readonly file: string;
+  readonly variable: string;
+  readonly quantity?: Quantity;
+  readonly units?: string;
+  /** hPa, for a variable that has no level axis. */
+  readonly level?: number;
+}
+
+export interface FileContents {
+  readonly file: string;
+  readonly format: string;
+  readonly bytes: number;
+  readonly fields: readonly FieldDescription[];
+  readonly leftOut: readonly LeftOut[];
+  /** Repairs and oddities, in words. */
+  readonly notes: readonly string[];
+  /** Global attributes worth showing: title, institution, source, history, comment. */
+  readonly about: Readonly<Record<string, string>>;
+}
+
+/** Which part of a field to read. Absent = all. */
+export interface SlabRequest {
+  readonly times: IndexRange;
+  /** Indices into `levels`; ignored on a field without levels. */
+  readonly levels?: readonly number[];
+  /** Rows south → north. */
+  readonly rows?: IndexRange;
+}
+
+/** An open file: what it holds, and slabs of it in SI units, south → north, west → east. */
+export interface OpenFile {
+  readonly contents: FileContents;
+  /** @throws NotFoundError for an unknown key; ShapeError for a request outside the field; FormatError. */
+  read(key: string, request: SlabRequest): Promise<Slab>;
+  close(): Promise<void>;
+}

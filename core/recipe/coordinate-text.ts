@@ -1,0 +1,16 @@
+import type { Coordinate } from "../diagnostics/entry.ts";
+import type { Calendar } from "../field/axes.ts";
+import { isoText } from "../field/calendar.ts";
+
+export interface CoordinateText {
+  readonly units: string;
+  text(value: number): string;
+}
+
+/** How a coordinate's values are written in a table: times as dates, everything else as numbers that read back exactly. */
+export function coordinateText(coordinate: Coordinate): CoordinateText {
+  const calendar = coordinate.attributes?.calendar;
+  if (calendar === undefined || !coordinate.units.startsWith("days since 1970-01-01"))
+    return { units: coordinate.units, text: String };
+  return { units: "UTC", text: (days) => isoText(days, calendar as Calendar) };
+}

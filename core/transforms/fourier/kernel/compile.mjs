@@ -1,0 +1,44 @@
+// Compiles the kernel: `npm run kernel` writes ../kernel.generated.ts; imported, it gives the bytes to whoever asks.
+import { readFile, writeFile } from "node:fs/promises";
+import { fileURLToPath } from "node:url";
+import asc from "assemblyscript/asc";
+
+const OPTIONS = [
+  "index.ts",
+  "--outFile",
+  "kernel.wasm",
+  "--runtime",
+  "stub",
+  "--enable",
+  "simd",
+  "--optimizeLevel",
+  "3",
+  "--converge",
+  "--noAssert",
+  "--initialMemory",
+  "1",
+];
+
+/** The module's bytes, compiled anew from assembly/index.ts. */
+export async function compiledKernel() {
+  const source = await readFile(new URL("./assembly/index.ts", import.meta.url), "utf8");
+  let bytes = null;
+  const { error, stderr } = await asc.main(OPTIONS, {
+    readFile: (name) => (name === "index.ts" ? source : null),
+    writeFile: (name, contents) => {
+      if (name === "kernel.wasm") bytes = contents;
+    },
+    listFiles: () => [],
+  });
+  if (error || bytes === null) throw new Error(`The kernel does not compile: ${stderr?.toString() ?? error}`);
+  return bytes;
+}
+
+if (process.argv[1] === fileURLToPath(import.meta.url)) {
+  const text = Buffer.from(await compiledKernel()).toString("base64");
+  const lines = text.match(/.{1,140}/g).map((line) => `  "${line}",`);
+  await writeFile(
+    new URL("../kernel.generated.ts", import.meta.url),
+    `// Made by \`npm run kernel\` from kernel/assembly; a test compiles it anew and compares.\n\n/** The Fourier kernel's WebAssembly module, base64. */\nexport const KERNEL = [\n${lines.join("\n")}\n].join("");\n`,
+  );
+}

@@ -1,0 +1,3 @@
+export const BROWSER_FLAGS: string[];
+export function installedBrowser(): string | null;
+export function browserPath(): Promise<string>;
