@@ -3,7 +3,7 @@ import { THEMES, waveColour } from "../theme/tokens.ts";
 
 const ROW = 17;
 const BAR = 11;
-const NAME = 46;
+const NAME = 52;
 const NUMBER = 50;
 
 /** `+301`, `−11`, `+0.4`. */

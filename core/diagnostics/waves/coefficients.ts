@@ -26,10 +26,20 @@ export function rowCoefficients(x: Float64Array, lon: Float64Array, waves: numbe
   const rows = x.length / n;
   const kept = waves + 1;
   const departures = new Float64Array(x.length);
+  const variance = new Float64Array(rows);
   for (let r = 0; r < rows; r++) {
     const base = r * n;
-    const first = x[base] as number;
-    for (let i = 0; i < n; i++) departures[base + i] = (x[base + i] as number) - first;
+    const first = x[base];
+    let sum = 0;
+    let squares = 0;
+    for (let i = base; i < base + n; i++) {
+      const d = x[i] - first;
+      departures[i] = d;
+      sum += d;
+      squares += d * d;
+    }
+    // Departures from a value of the row itself: (Σd/N)² is at most N times the variance, so few digits can cancel.
+    variance[r] = Math.max(0, squares / n - (sum / n) * (sum / n));
   }
   const c = new Float64Array(rows * kept * 2);
   realTransform(n).forward(departures, rows, c, kept);
@@ -39,16 +49,9 @@ export function rowCoefficients(x: Float64Array, lon: Float64Array, waves: numbe
     turns[2 * k] = Math.cos(k * start) / n;
     turns[2 * k + 1] = -Math.sin(k * start) / n;
   }
-  const variance = new Float64Array(rows);
   for (let r = 0; r < rows; r++) {
     const at = 2 * r * kept;
-    const mean = (c[at] as number) / n;
-    let sum = 0;
-    for (let i = 0; i < n; i++) {
-      const d = (departures[r * n + i] as number) - mean;
-      sum += d * d;
-    }
-    variance[r] = sum / n;
+    const mean = c[at] / n;
     for (let k = 0; k < kept; k++) {
       const re = c[at + 2 * k] as number;
       const im = c[at + 2 * k + 1] as number;

@@ -26,6 +26,24 @@ function evenStepOf(days: Float64Array): number | null {
   return step;
 }
 
+/** The coefficients of one place, wave by wave with the steps side by side: the record has them far apart. */
+function gathered(
+  c: Float64Array,
+  place: number,
+  stride: number,
+  kept: number,
+  nTime: number,
+  into: Float64Array,
+): void {
+  for (let t = 0; t < nTime; t++) {
+    const from = t * stride + 2 * place * kept;
+    for (let k = 0; k < kept; k++) {
+      into[2 * (k * nTime + t)] = c[from + 2 * k];
+      into[2 * (k * nTime + t) + 1] = c[from + 2 * k + 1];
+    }
+  }
+}
+
 /** Speeds over all steps, and how far each wave stands still. `notes` takes a sentence where something is left out. */
 export function speedVariables(frame: WaveFrame, c: Float64Array, notes: string[]): ResultVariable[] {
   const { waves, nLevel, nRow, nTime, choice, series, nLon } = frame;
@@ -48,20 +66,22 @@ export function speedVariables(frame: WaveFrame, c: Float64Array, notes: string[
   if (!isTime)
     notes.push(`The record steps along "${series.steps.name}", which is no time: there are no phase speeds.`);
   else if (step === null && nTime > 1) notes.push("The steps are not evenly spaced: there is no lag-one speed.");
+  const place = new Float64Array(2 * kept * nTime);
   for (let p = 0, at = 0; p < nLevel * nRow; p++) {
+    gathered(c, p, stride, kept, nTime, place);
     const metres =
       EARTH_RADIUS * Math.cos((choice.latitudes[p % nRow] as number) * RADIANS_PER_DEGREE) * RADIANS_PER_DEGREE;
     for (const k of waves) {
-      const shift = 2 * (p * kept + k);
+      const shift = 2 * k * nTime;
       // The Nyquist wave has no phase: its crests can only stand on the columns or between them.
       const usable = isTime && !isNyquist(k, nLon);
-      const drift = usable ? phaseDrift(c, stride, shift, days, 0, nTime, k, choice.floor) : NOTHING;
-      const lagOne = usable && step !== null ? lagOneDrift(c, stride, shift, 0, nTime, k, step) : NOTHING;
+      const drift = usable ? phaseDrift(place, 2, shift, days, 0, nTime, k, choice.floor) : NOTHING;
+      const lagOne = usable && step !== null ? lagOneDrift(place, 2, shift, 0, nTime, k, step) : NOTHING;
       speed[at] = drift.speed;
       error[at] = drift.error;
       speedMs[at] = (drift.speed * metres) / SECONDS_PER_DAY;
       lag[at] = lagOne.speed;
-      ratio[at] = stationarityRatio(c, stride, shift, 0, nTime);
+      ratio[at] = stationarityRatio(place, 2, shift, 0, nTime);
       speedReasons[at] = drift.reason;
       lagReasons[at] = lagOne.reason;
       ratioReasons[at] = Number.isNaN(ratio[at] as number) ? MISSING : 0;

@@ -46,10 +46,28 @@ export function decodingOf(variable: StoredVariable): Decoding {
 export function decodeInPlace(stored: Float64Array, how: Decoding): Float64Array {
   const { missing, least, most, wrap, scale, offset } = how;
   const [a = Number.NaN, b = Number.NaN] = missing;
-  const more = missing.length > 2 ? new Set(missing) : null;
+  const isPlain =
+    missing.length < 3 && wrap === 0 && least === Number.NEGATIVE_INFINITY && most === Number.POSITIVE_INFINITY;
+  // The common cases run over whole records, so they get loops without a test that cannot matter.
+  if (isPlain && scale === 1 && offset === 0) {
+    if (missing.length === 0) return stored;
+    for (let i = 0; i < stored.length; i++) {
+      const x = stored[i];
+      if (x === a || x === b) stored[i] = Number.NaN;
+    }
+    return stored;
+  }
+  if (isPlain) {
+    for (let i = 0; i < stored.length; i++) {
+      const x = stored[i];
+      stored[i] = x === a || x === b ? Number.NaN : x * scale + offset;
+    }
+    return stored;
+  }
+  const more = new Set(missing);
   for (let i = 0; i < stored.length; i++) {
     let x = stored[i] as number;
-    if (x === a || x === b || more?.has(x)) {
+    if (more.has(x)) {
       stored[i] = Number.NaN;
       continue;
     }

@@ -54,7 +54,7 @@ export function swap2(words: Uint16Array): void {
 export function swap4(words: Uint32Array): void {
   for (let i = 0; i < words.length; i++) {
     const w = words[i] as number;
-    words[i] = (w << 24) | ((w & 0xff00) << 8) | ((w >>> 8) & 0xff00) | (w >>> 24);
+    words[i] = (((w << 8) | (w >>> 24)) & 0x00ff00ff) | (((w << 24) | (w >>> 8)) & 0xff00ff00);
   }
 }
 
