@@ -119,7 +119,9 @@ export class BackgroundPasses {
         const jobs = passJobs(field, level, passRows, spec);
         const parts = await jobParts(jobs, crew, signal, onDone);
         pass = { rows: passRows, fitted: fitBackground(parts, seriesOf(field, level, spec), passRows) };
-        this.#passes.set(this.#key(field, level, spec), pass);
+        // A pass over more rows may have ended in the meantime; it serves more.
+        if (this.#covering(field, level, passRows, spec) === null)
+          this.#passes.set(this.#key(field, level, spec), pass);
       }
       fits.push(pass.fitted);
     }

@@ -126,7 +126,14 @@ class Stirring {
 }
 
 /** Take the mean out of a pull, where it pulls: a source of net rotation would drag the whole polar cap along. */
-function balance(pull: Float64Array, weights: Float64Array, a: Float64Array, b: Float64Array, useA: number, useB: number): void {
+function balance(
+  pull: Float64Array,
+  weights: Float64Array,
+  a: Float64Array,
+  b: Float64Array,
+  useA: number,
+  useB: number,
+): void {
   const share = a.map((value, i) => useA * value + useB * (b[i] as number));
   let total = 0;
   let sum = 0;
@@ -171,8 +178,14 @@ export function invention(days: number): { days: InventedDay[]; planted: Planted
     if (block === 0 && train === 0) return out;
     const grid = sphere.synthesis(zeta);
     const pull = grid.map((value, i) => {
-      const toBlock = (block / (0.6 * DAY)) * (blockPlace[i] as number) * ((background[i] as number) + (blockShape[i] as number) - value);
-      const toTrain = (train / (0.4 * DAY)) * (trainPlace[i] as number) * ((background[i] as number) + (trainShape[i] as number) - value);
+      const toBlock =
+        (block / (0.6 * DAY)) *
+        (blockPlace[i] as number) *
+        ((background[i] as number) + (blockShape[i] as number) - value);
+      const toTrain =
+        (train / (0.4 * DAY)) *
+        (trainPlace[i] as number) *
+        ((background[i] as number) + (trainShape[i] as number) - value);
       return toBlock + toTrain;
     });
     balance(pull, sphere.weights, blockPlace, trainPlace, block > 0 ? 1 : 0, train > 0 ? 1 : 0);

@@ -40,7 +40,12 @@ export function withBand(kept: Case, ends: readonly [number, number]): Case {
   const wasThere = kept.cursor.lat >= south - 1e-6 && kept.cursor.lat <= north + 1e-6;
   const lat = wasThere || Math.sign(middle) !== Math.sign(kept.cursor.lat) ? middle : kept.cursor.lat;
   const hemisphere = middle === 0 ? kept.chart.hemisphere : middle < 0 ? "south" : "north";
-  return { ...kept, waves: { ...kept.waves, band }, cursor: { ...kept.cursor, lat }, chart: { ...kept.chart, hemisphere } };
+  return {
+    ...kept,
+    waves: { ...kept.waves, band },
+    cursor: { ...kept.cursor, lat },
+    chart: { ...kept.chart, hemisphere },
+  };
 }
 
 export function withWavesOf(kept: Case, of: WavesOf): Case {
@@ -82,7 +87,9 @@ export function withTurn(kept: Case, degrees: number): Case {
 /** The cursor's meridian at the foot of the hemisphere chart, or in the middle of the belt. */
 export function withTurnToCursor(kept: Case): Case {
   const { lon } = kept.cursor;
-  return kept.chart.kind === "hemisphere" ? withChart(kept, { turn: lon }) : withChart(kept, { cut: westEast(lon - 180) });
+  return kept.chart.kind === "hemisphere"
+    ? withChart(kept, { turn: lon })
+    : withChart(kept, { cut: westEast(lon - 180) });
 }
 
 export function withTheme(kept: Case, theme: Theme): Case {

@@ -8,9 +8,7 @@ const FEWEST_FOR_MEAN = 6; // steps; a departure from the mean of fewer says mor
 
 /** Fields that a map can be drawn of: every field with at least two rows and columns. */
 export function usableFields(contents: readonly FileContents[]): FieldDescription[] {
-  return contents
-    .flatMap((file) => file.fields)
-    .filter(({ grid }) => grid.lat.length > 1 && grid.lon.length > 2);
+  return contents.flatMap((file) => file.fields).filter(({ grid }) => grid.lat.length > 1 && grid.lon.length > 2);
 }
 
 export function chosenFieldOf(kept: Case, contents: readonly FileContents[]): FieldDescription | null {
@@ -54,7 +52,11 @@ function settledBand(band: readonly [number, number], field: FieldDescription): 
   const inside = (value: number): boolean => value >= south - spacing && value <= north + spacing;
   if (inside(band[0]) && inside(band[1])) return band;
   const middle = (south + north) / 2;
-  const wanted = inside(PREFERRED_LATITUDE) ? PREFERRED_LATITUDE : inside(-PREFERRED_LATITUDE) ? -PREFERRED_LATITUDE : middle;
+  const wanted = inside(PREFERRED_LATITUDE)
+    ? PREFERRED_LATITUDE
+    : inside(-PREFERRED_LATITUDE)
+      ? -PREFERRED_LATITUDE
+      : middle;
   return [wanted, wanted];
 }
 
@@ -92,7 +94,8 @@ export function settledCase(kept: Case, contents: readonly FileContents[]): Case
     cursor: {
       lat: Math.min(lat[lat.length - 1], Math.max(lat[0], latitude)),
       lon: kept.cursor.lon,
-      step: Math.min(steps - 1, kept.cursor.step),
+      // A record of times starts at its latest, as one does on shift.
+      step: isNew && field.steps.kind === "time" ? steps - 1 : Math.min(steps - 1, kept.cursor.step),
     },
     chart: {
       ...kept.chart,

@@ -36,7 +36,10 @@ export function waveSpan(steps: StepAxis, [from, to]: IndexRange): IndexRange {
 }
 
 /** A span as a recipe's period; undefined for the whole record. */
-export function spanPeriod(steps: StepAxis, [from, to]: IndexRange): readonly [string | number, string | number] | undefined {
+export function spanPeriod(
+  steps: StepAxis,
+  [from, to]: IndexRange,
+): readonly [string | number, string | number] | undefined {
   if (from === 0 && to === steps.values.length) return undefined;
   const end = (i: number): string | number =>
     steps.kind === "time" ? isoText(steps.values[i], steps.calendar) : steps.values[i];

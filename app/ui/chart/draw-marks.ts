@@ -213,17 +213,11 @@ export function drawTexts(pen: Pen, map: ChartMap, layers: ChartLayers, tokens: 
     pen.stroke();
     pen.fillStyle = tokens.ink2;
     pen.textAlign = "center";
-    const edges: readonly (readonly [number, number])[] = [
-      [-4, 3.0],
-      [-1, 6.0],
-      [1, 9],
-      [4, 12],
-    ];
-    for (const [times, place] of edges) {
-      const value = times * shading.step;
-      const size0 = Number(Math.abs(value).toPrecision(4));
-      pen.fillText(`${value < 0 ? "−" : "+"}${size0}`, place * size + (times < 0 ? size : 0), foot);
-    }
+    // Edges of the fourth bands, and what the middle stands for.
+    const sizeText = (times: number): string => String(Number((times * shading.step).toPrecision(4)));
+    pen.fillText(`−${sizeText(4)}`, 4 * size, foot);
+    pen.fillText(`±${sizeText(1)}`, 7.5 * size, foot);
+    pen.fillText(`+${sizeText(4)}`, 11 * size, foot);
     pen.textAlign = "left";
     pen.fillText(shading.units, 15 * size + 5, top + 9);
   }

@@ -213,7 +213,9 @@ export class SvgPen {
   }
   clip(): void {
     const id = `clip${this.#clips++}`;
-    this.#parts.push(`<clipPath id="${id}"><path d="${this.#path}"${this.#common()}/></clipPath><g clip-path="url(#${id})">`);
+    this.#parts.push(
+      `<clipPath id="${id}"><path d="${this.#path}"${this.#common()}/></clipPath><g clip-path="url(#${id})">`,
+    );
     this.#state.groups += 1;
   }
   #text(text: string, x: number, y: number, paint: string): void {

@@ -47,9 +47,17 @@ export function cursorReading(frame: Frame, grid: Grid, lat: number, lon: number
     of: frame.background === null ? ("zonal-mean" as const) : ("background" as const),
   };
   if (!grid.closesCircle)
-    return { ...reading, shares: null, whyNot: "This grid does not close the circle of longitude, so its rows have no waves." };
+    return {
+      ...reading,
+      shares: null,
+      whyNot: "This grid does not close the circle of longitude, so its rows have no waves.",
+    };
   if (Number.isNaN(mean))
-    return { ...reading, shares: null, whyNot: "The cursor's row misses a value, so it has no waves. Move the cursor." };
+    return {
+      ...reading,
+      shares: null,
+      whyNot: "The cursor's row misses a value, so it has no waves. Move the cursor.",
+    };
   const { c } = rowCoefficients(departures, grid.lon, waves);
   return { ...reading, shares: sharesAt(c, 0, grid.lon[column], sum, waves, nLon), whyNot: null };
 }

@@ -1,6 +1,6 @@
+import type { ResultVariable } from "../../../core/diagnostics/entry.ts";
 import type { IndexRange } from "../../../core/field/axes.ts";
 import { REASONS, type ReasonKey } from "../../../core/field/reasons.ts";
-import type { ResultVariable } from "../../../core/diagnostics/entry.ts";
 import type { Result } from "../../../core/recipe/recipe.ts";
 import { westEast } from "../text/place-text.ts";
 

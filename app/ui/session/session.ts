@@ -1,11 +1,18 @@
 import type { Correction, FileContents } from "../../../core/formats/dataset.ts";
-import type { ShellFile, Shell } from "../../shell/contract.ts";
+import type { Shell, ShellFile } from "../../shell/contract.ts";
 import type { Desk, SourceDescription, TaskProgress } from "../../worker/desk.ts";
 import { withCorrection } from "../case/actions.ts";
 import { type Case, type CaseFile, emptyCase } from "../case/case.ts";
 import { caseOfText, caseText } from "../case/case-text.ts";
 import { settledCase, usableFields } from "../case/settled-case.ts";
-import { type Notice, type SessionState, startingState, stillAwaited, withFiles, withProgress } from "./session-state.ts";
+import {
+  type Notice,
+  type SessionState,
+  startingState,
+  stillAwaited,
+  withFiles,
+  withProgress,
+} from "./session-state.ts";
 
 const AUTOSAVE_AFTER = 600; // milliseconds of rest; a drag through time writes once
 const CASE_BYTES = 4 * 1024 * 1024; // a larger .json is no case
@@ -202,15 +209,22 @@ export class Session {
     const places = wanted.flatMap(({ place }) => (place === null ? [] : [place]));
     const found = places.length > 0 ? await this.#shell.filesAt(places) : [];
     const sample = wanted.some(({ place }) => place === null) ? await this.#shell.sampleFiles() : [];
-    const openings = [...found, ...sample].map(openingOfShellFile).filter(({ entry }) =>
-      wanted.some(({ name, size, place }) => name === entry.name && (place ?? null) === entry.place && size === entry.size),
-    );
+    const openings = [...found, ...sample]
+      .map(openingOfShellFile)
+      .filter(({ entry }) =>
+        wanted.some(
+          ({ name, size, place }) => name === entry.name && (place ?? null) === entry.place && size === entry.size,
+        ),
+      );
     for (const { file } of this.#state.contents)
       if (!held.some(({ name }) => name === file)) await this.desk.close(file).catch(() => undefined);
     this.#set({
       kept: saved,
       contents: this.#state.contents.filter(({ file }) => held.some(({ name }) => name === file)),
-      awaited: stillAwaited(wanted, openings.map(({ entry }) => entry)),
+      awaited: stillAwaited(
+        wanted,
+        openings.map(({ entry }) => entry),
+      ),
       isSample: saved.files.length > 0 && saved.files.every(({ name }) => sample.some((file) => file.name === name)),
     });
     if (openings.length > 0) await this.#openAll(openings, this.#state.isSample);
@@ -240,24 +254,36 @@ export class Session {
   async #take(opened: readonly FileContents[], entries: readonly CaseFile[], isSample: boolean): Promise<void> {
     const before = this.#state;
     const isAwaited = (entry: CaseFile): boolean => before.awaited.some(({ name }) => name === entry.name);
-    const isReturn = entries.some((entry) => isAwaited(entry) || before.kept.files.some(({ name }) => name === entry.name));
+    const isReturn = entries.some(
+      (entry) => isAwaited(entry) || before.kept.files.some(({ name }) => name === entry.name),
+    );
     // The sample makes way for the user's own files; so do the settings that belonged to it.
     const isFresh = !isReturn && (before.isSample || before.kept.files.length === 0);
     if (isFresh)
       for (const { file } of before.contents)
         if (!opened.some((contents) => contents.file === file)) await this.desk.close(file).catch(() => undefined);
-    const stay = isFresh ? [] : before.contents.filter(({ file }) => !opened.some((contents) => contents.file === file));
+    const stay = isFresh
+      ? []
+      : before.contents.filter(({ file }) => !opened.some((contents) => contents.file === file));
     const contents = [...stay, ...opened];
     for (const entry of entries) {
       const expected = before.awaited.find(({ name }) => name === entry.name);
       if (expected !== undefined && expected.size !== entry.size)
-        this.#notify("note", `${entry.name} is not the very file of the case.`, `It has ${entry.size} bytes; the case was made with ${expected.size}.`);
+        this.#notify(
+          "note",
+          `${entry.name} is not the very file of the case.`,
+          `It has ${entry.size} bytes; the case was made with ${expected.size}.`,
+        );
     }
     const base: Case = isFresh ? { ...emptyCase(before.kept.theme), title: titleOf(entries, isSample) } : before.kept;
     const files = withFiles(base.files, entries);
     const [first] = usableFields(opened);
     const chosen = isReturn || isFresh || first === undefined ? base.field : null;
-    this.#set({ contents, awaited: stillAwaited(before.awaited, entries), isSample: isFresh ? isSample : before.isSample && isReturn });
+    this.#set({
+      contents,
+      awaited: stillAwaited(before.awaited, entries),
+      isSample: isFresh ? isSample : before.isSample && isReturn,
+    });
     const next = { ...base, files, field: chosen };
     // A further file shows itself: its own best field is chosen, with the case's settings kept where they fit.
     if (chosen === null && !isFresh) {

@@ -1,11 +1,11 @@
+import { DataError } from "../../../core/errors.ts";
 import type { IndexRange } from "../../../core/field/axes.ts";
 import type { FieldDescription, FileContents } from "../../../core/formats/dataset.ts";
-import { DataError } from "../../../core/errors.ts";
 import type { FieldPlace, Frame, Ribbon } from "../../worker/desk.ts";
-import { WaveSeries } from "../reading/wave-series.ts";
 import { chosenFieldOf, levelIndexOf } from "../case/settled-case.ts";
 import { ribbonSpan, waveSpan } from "../case/step-span.ts";
 import { waveRecipe } from "../case/wave-recipe.ts";
+import { WaveSeries } from "../reading/wave-series.ts";
 import type { SessionState } from "./session-state.ts";
 import { type Answer, useAnswer } from "./use-answer.ts";
 import { useSession } from "./use-session.tsx";

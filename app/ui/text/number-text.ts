@@ -31,9 +31,7 @@ export interface UnitPart {
 export function unitParts(units: string): UnitPart[] {
   return units.split(" ").map((unit) => {
     const match = /^(.*?[A-Za-z%])(-?\d+)$/.exec(unit);
-    return match === null
-      ? { text: unit, exponent: null }
-      : { text: match[1], exponent: match[2].replace("-", MINUS) };
+    return match === null ? { text: unit, exponent: null } : { text: match[1], exponent: match[2].replace("-", MINUS) };
   });
 }
 

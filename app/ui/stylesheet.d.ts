@@ -1,0 +1,2 @@
+// Stylesheets are imported for their effect alone.
+declare module "*.css";
