@@ -15,7 +15,7 @@ import type { ChartGrid, ChartLayers, ChartView } from "./types.ts";
 function margins(view: ChartView): { top: number; right: number; bottom: number; left: number } {
   return view.kind === "hemisphere"
     ? { top: 48, right: 44, bottom: 48, left: 44 }
-    : { top: 34, right: 14, bottom: 66, left: 46 };
+    : { top: 48, right: 14, bottom: 66, left: 46 };
 }
 
 export function mapFor(view: ChartView, width: number, height: number): ChartMap {

@@ -182,17 +182,17 @@ export function drawRim(
 export function drawTexts(pen: Pen, map: ChartMap, layers: ChartLayers, tokens: Tokens): void {
   pen.save();
   pen.textBaseline = "alphabetic";
-  const column = (lines: readonly string[], x: number, align: CanvasTextAlign): void => {
+  const column = (lines: readonly string[], x: number, align: CanvasTextAlign, top = 13): void => {
     pen.textAlign = align;
     lines.forEach((line, i) => {
       pen.font = i === 0 ? `620 13.5px ${FONT}` : `400 12px ${FONT}`;
       pen.fillStyle = i === 0 ? tokens.ink : tokens.ink2;
-      pen.fillText(line, x, 13 + 15.5 * i);
+      pen.fillText(line, x, top + 15.5 * i);
     });
   };
   const belt = map.view.kind === "belt";
   column(belt ? [layers.caption.join(", ").replace(", ", ": ")] : layers.caption, 0, "left");
-  column(belt ? [layers.readout.join(", ").replace(", ", ": ")] : layers.readout, map.width, "right");
+  column(belt ? [layers.readout.join(", ").replace(", ", ": ")] : layers.readout, map.width, "right", belt ? 28 : 13);
   const { shading, contours } = layers;
   const foot = map.height - 3;
   pen.font = `400 12px ${FONT}`;
