@@ -29,6 +29,7 @@ const APP_FOLDERS: Readonly<Record<string, { readonly values: readonly string[];
 
 /** Packages that only some folders may use. */
 const PACKAGES: Readonly<Record<string, readonly string[]>> = {
+  "plotly.js": ["app/ui"],
   electron: ["app/main", "app/preload"],
   react: ["app/ui"],
   "react-dom": ["app/ui"],

@@ -242,8 +242,8 @@ test("the table's circle is exact where it can be", () => {
   for (const n of [9, 144, 2879]) {
     const w = twiddles(n);
     for (let k = 1; k < n; k++) {
-      expect(w[2 * k]).toBe(w[2 * (n - k)]);
-      expect(w[2 * k + 1]).toBe(-(w[2 * (n - k) + 1] as number));
+      expect((w[2 * k] as number) === w[2 * (n - k)]).toBe(true);
+      expect((w[2 * k + 1] as number) === -(w[2 * (n - k) + 1] as number)).toBe(true);
     }
   }
 });
