@@ -1,5 +1,6 @@
 import { type BackgroundSpec, NO_BACKGROUND } from "../../../core/background/spec.ts";
 import type { FieldDescription, FileContents } from "../../../core/formats/dataset.ts";
+import { nearestRow } from "../../../core/grid/rows.ts";
 import type { Case } from "./case.ts";
 
 const PREFERRED_LEVELS = [500, 300, 250, 200] as const; // hPa, where the waves of the troposphere are looked at
@@ -43,21 +44,25 @@ function settledLevel(level: number | null, field: FieldDescription): number | n
   return levels[Math.floor(levels.length / 2)];
 }
 
-/** A band that the grid has: kept if its rows are there, else the nearest row. */
+/** A band that the grid has; a single latitude becomes that of the nearest row, for that is the row whose waves are shown. */
 function settledBand(band: readonly [number, number], field: FieldDescription): readonly [number, number] {
   const { lat } = field.grid;
   const south = lat[0];
   const north = lat[lat.length - 1];
   const spacing = Math.abs(lat[1] - lat[0]);
   const inside = (value: number): boolean => value >= south - spacing && value <= north + spacing;
-  if (inside(band[0]) && inside(band[1])) return band;
+  const row = (latitude: number): readonly [number, number] => {
+    const found = lat[nearestRow(lat, latitude)];
+    return [found, found];
+  };
+  if (inside(band[0]) && inside(band[1])) return band[0] === band[1] ? row(band[0]) : band;
   const middle = (south + north) / 2;
   const wanted = inside(PREFERRED_LATITUDE)
     ? PREFERRED_LATITUDE
     : inside(-PREFERRED_LATITUDE)
       ? -PREFERRED_LATITUDE
       : middle;
-  return [wanted, wanted];
+  return row(wanted);
 }
 
 /** A background that the record can have; a new case of very few steps starts without one. */
@@ -83,7 +88,8 @@ export function settledCase(kept: Case, contents: readonly FileContents[]): Case
   const hasBackground = background.kind !== "none";
   const { lat } = field.grid;
   const isNew = kept.field === null;
-  const latitude = isNew ? (band[0] + band[1]) / 2 : kept.cursor.lat;
+  const isOnRow = kept.waves.band[0] === kept.waves.band[1] && kept.cursor.lat === kept.waves.band[0];
+  const latitude = isNew || isOnRow ? (band[0] + band[1]) / 2 : kept.cursor.lat;
   const hemisphere = latitude < 0 ? "south" : "north";
   return {
     ...kept,

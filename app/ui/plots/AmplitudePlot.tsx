@@ -4,7 +4,6 @@ import type { StepAxis } from "../../../core/field/axes.ts";
 import type { WaveSeries } from "../reading/wave-series.ts";
 import { numberText, unitText } from "../text/number-text.ts";
 import { stepTicks } from "../text/step-name.ts";
-import { niceStep } from "../theme/nice-step.ts";
 import { FONT, THEMES, type ThemeName, waveColour } from "../theme/tokens.ts";
 import { PlotlyFigure } from "./PlotlyFigure.tsx";
 
@@ -21,27 +20,33 @@ interface AmplitudePlotProps {
 
 const DAYS = 20;
 const RIGHT = 26;
+const TOP = 5;
+const BOTTOM = 19;
 
-/** Amplitude of each wave over the last twenty days (steps, on a record that is not a time). */
+const ROUND = [1, 2, 5] as const;
+
+/** A round number below `top`, above half of its height, for the one line across the plot. */
+function niceBelow(top: number): number {
+  const power = 10 ** Math.floor(Math.log10(top));
+  const under = ROUND.map((round) => round * power).filter((value) => value <= 0.94 * top);
+  return under.at(-1) ?? (5 * power) / 10;
+}
+
+/** Amplitude of each wave over the last twenty days; over all steps shown, on a record that is not a time. */
 export function AmplitudePlot({ series, steps, step, units, theme, width, height, chosen }: AmplitudePlotProps) {
   const tokens = THEMES[theme];
-  const from = useMemo(() => {
+  const [from, to] = useMemo(() => {
+    if (steps.kind !== "time") return [series.span[0], series.span[1] - 1];
     let first = step;
-    const isTime = steps.kind === "time";
-    while (
-      first > series.span[0] &&
-      (isTime
-        ? (steps.values[step] as number) - (steps.values[first - 1] as number) <= DAYS + 1e-6
-        : step - first < DAYS)
-    )
-      first -= 1;
-    return first;
+    while (first > series.span[0] && steps.values[step] - steps.values[first - 1] <= DAYS + 1e-6) first -= 1;
+    return [first, step];
   }, [series, steps, step]);
-  const { data, layout, labels } = useMemo(() => {
-    const indices = Array.from({ length: step - from + 1 }, (_, i) => from + i);
+  const { data, layout, labels, line } = useMemo(() => {
+    const indices = Array.from({ length: to - from + 1 }, (_, i) => from + i);
     let most = 0;
     for (const k of series.waves) for (const i of indices) most = Math.max(most, series.value("amplitude", i, k) || 0);
-    const top = niceStep(most * 1.02);
+    const top = most > 0 ? most * 1.06 : 1;
+    const line = niceBelow(top);
     const curves: Partial<Data>[] = series.waves.map((k) => ({
       type: "scatter",
       mode: indices.length > 1 ? "lines" : "markers",
@@ -52,15 +57,15 @@ export function AmplitudePlot({ series, steps, step, units, theme, width, height
       cliponaxis: false,
       hoverinfo: "skip",
     }));
-    const ticks = stepTicks(steps, from, step + 1, 5);
+    const ticks = stepTicks(steps, from, to + 1, 5);
     const frame: Partial<Layout> = {
-      margin: { l: 6, r: RIGHT, t: 16, b: 19 },
+      margin: { l: 6, r: RIGHT, t: TOP, b: BOTTOM },
       paper_bgcolor: "rgba(0,0,0,0)",
       plot_bgcolor: "rgba(0,0,0,0)",
       showlegend: false,
       font: { family: FONT, size: 11.5, color: tokens.ink2 },
       xaxis: {
-        range: [from, Math.max(step, from + 1)],
+        range: [from, Math.max(to, from + 1)],
         tickvals: ticks.map(({ index }) => index),
         ticktext: ticks.map(({ text }) => text),
         showgrid: false,
@@ -73,40 +78,41 @@ export function AmplitudePlot({ series, steps, step, units, theme, width, height
       },
       yaxis: {
         range: [0, top],
-        tickvals: [top / 2, top],
+        tickvals: [line],
         showticklabels: false,
         gridcolor: tokens.rule,
         zeroline: false,
         fixedrange: true,
       },
-      annotations: [
-        {
-          x: 1,
-          xref: "paper",
-          y: top,
-          yref: "y",
-          xanchor: "right",
-          yanchor: "bottom",
-          showarrow: false,
-          text: `${numberText(top)} ${unitText(units)}`,
-          font: { size: 11.5, color: tokens.ink2 },
-        },
-      ],
+      shapes:
+        to > step
+          ? [
+              {
+                type: "line",
+                x0: step,
+                x1: step,
+                y0: 0,
+                y1: 1,
+                yref: "paper",
+                layer: "below",
+                line: { color: tokens.marker, width: 4 },
+              },
+            ]
+          : [],
     };
-    // Names of the three largest today, kept apart.
-    const room = height - 35;
+    // Names at the curves' ends, kept apart; the small ones do without.
+    const room = height - TOP - BOTTOM;
     const names = series.waves
-      .map((k) => ({ k, y: 16 + room * (1 - (series.value("amplitude", step, k) || 0) / top) }))
-      .filter(({ k }) => series.value("amplitude", step, k) > 0.12 * top)
-      .sort((a, b) => a.y - b.y);
-    let last = Number.NEGATIVE_INFINITY;
-    const placed = names.flatMap((name) => {
-      if (name.y - last < 11) return [];
-      last = name.y;
-      return [name];
-    });
-    return { data: curves, layout: frame, labels: placed };
-  }, [series, steps, step, from, units, theme, tokens, height, chosen]);
+      .map((k) => ({ k, amplitude: series.value("amplitude", to, k) || 0 }))
+      .filter(({ k, amplitude }) => k === chosen || amplitude > 0.12 * top)
+      .sort((p, q) => Number(q.k === chosen) - Number(p.k === chosen) || q.amplitude - p.amplitude);
+    const placed: { k: number; y: number }[] = [];
+    for (const { k, amplitude } of names) {
+      const y = TOP + room * (1 - amplitude / top);
+      if (placed.every((other) => Math.abs(other.y - y) >= 11)) placed.push({ k, y });
+    }
+    return { data: curves, layout: frame, labels: placed, line };
+  }, [series, steps, step, from, to, theme, tokens, height, chosen]);
   return (
     <div
       style={{ position: "relative", width, height }}
@@ -114,6 +120,9 @@ export function AmplitudePlot({ series, steps, step, units, theme, width, height
       aria-label={`Amplitude of waves ${series.waves[0]} to ${series.waves.at(-1)} over the last ${DAYS} days`}
     >
       <PlotlyFigure data={data} layout={layout} width={width} height={height} />
+      <span className="note line-name">
+        line: {numberText(line, line < 10 ? 1 : 0)} {unitText(units)}
+      </span>
       {labels.map(({ k, y }) => (
         <span
           key={k}

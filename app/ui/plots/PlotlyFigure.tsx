@@ -2,6 +2,9 @@ import type { Data, Layout } from "plotly.js";
 import { useEffect, useRef } from "react";
 import { PLOT_CONFIG, plotly } from "./plotly.ts";
 
+/** Milliseconds of rest before a figure is made anew: a drag through time must not wait for it. */
+const REST = 60;
+
 interface FigureProps {
   readonly data: readonly Partial<Data>[];
   readonly layout: Partial<Layout>;
@@ -23,10 +26,13 @@ export function PlotlyFigure({ data, layout, width, height }: FigureProps) {
   }, []);
   useEffect(() => {
     if (width < 20 || height < 20) return;
-    void plotly().then((module) => {
-      if (live.current && place.current !== null)
-        return module.react(place.current, data, { ...layout, width, height }, PLOT_CONFIG);
-    });
+    const draw = (): void =>
+      void plotly().then((module) => {
+        if (live.current && place.current !== null)
+          return module.react(place.current, data, { ...layout, width, height }, PLOT_CONFIG);
+      });
+    const timer = setTimeout(draw, REST);
+    return () => clearTimeout(timer);
   }, [data, layout, width, height]);
   return <div ref={place} style={{ width, height }} aria-hidden="true" />;
 }

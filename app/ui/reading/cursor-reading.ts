@@ -4,6 +4,7 @@ import type { Grid } from "../../../core/field/axes.ts";
 import { nearestColumn, nearestRow } from "../../../core/grid/rows.ts";
 import type { Frame } from "../../worker/desk.ts";
 import { MOST_WAVES } from "../case/wave-recipe.ts";
+import { presentMean } from "./departures.ts";
 
 /** The numbers at the cursor's grid point. */
 export interface CursorReading {
@@ -30,12 +31,12 @@ export function cursorReading(frame: Frame, grid: Grid, lat: number, lon: number
   const at = row * nLon + column;
   const value = frame.values[at];
   const departures = new Float64Array(nLon);
-  let mean = 0;
-  for (let i = 0; i < nLon; i++) {
-    departures[i] = frame.values[row * nLon + i] - (frame.background?.[row * nLon + i] ?? 0);
-    mean += departures[i] / nLon;
+  for (let i = 0; i < nLon; i++)
+    departures[i] = frame.values[row * nLon + i] - (frame.background === null ? 0 : frame.background[row * nLon + i]);
+  if (frame.background === null) {
+    const mean = presentMean(departures);
+    for (let i = 0; i < nLon; i++) departures[i] -= mean;
   }
-  if (frame.background === null) for (let i = 0; i < nLon; i++) departures[i] -= mean;
   const sum = departures[column];
   const waves = Math.min(MOST_WAVES, Math.floor(nLon / 2));
   const reading = {
@@ -52,7 +53,7 @@ export function cursorReading(frame: Frame, grid: Grid, lat: number, lon: number
       shares: null,
       whyNot: "This grid does not close the circle of longitude, so its rows have no waves.",
     };
-  if (Number.isNaN(mean))
+  if (departures.some(Number.isNaN))
     return {
       ...reading,
       shares: null,

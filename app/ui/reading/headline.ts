@@ -64,7 +64,7 @@ export function headline(
   const size = `${numberText(leader.amplitude, digitsOf(units))} ${unitText(units)}`;
   const along = bandText(band);
   const main = `k ${leader.k} leads at ${along}: ${size}, ridge ${longitudeText(leader.nearestRidge)}${driftWords(leader)}`;
-  const carries = `It carries ${numberText(100 * leader.share)} % of the variance along ${along}`;
+  const carries = `It carries ${numberText(100 * leader.share)} % of the variance`;
   const second = `${carries}${changeWords(series, steps, step, leader.k, units)}; ${followerWords(readings, leader, units)}.`;
   return { main, second };
 }

@@ -1,9 +1,10 @@
 import { type GeoPermissibleObjects, geoEquirectangular, geoPath } from "d3-geo";
 import type { Data, Layout } from "plotly.js";
-import { type PointerEvent, useMemo } from "react";
+import { type KeyboardEvent, type PointerEvent, useMemo } from "react";
 import type { FieldDescription } from "../../../core/formats/dataset.ts";
 import { LAND } from "../chart/coast.ts";
 import { PlotlyFigure } from "../plots/PlotlyFigure.tsx";
+import { departures } from "../reading/departures.ts";
 import type { WaveSeries } from "../reading/wave-series.ts";
 import type { RibbonOf } from "../session/use-numbers.ts";
 import { longitudeText, westEast } from "../text/place-text.ts";
@@ -28,7 +29,16 @@ const LEFT = 50;
 const RIGHT = 24;
 const LAND_STRIP = 22;
 const TOP = LAND_STRIP + 20;
-const BOTTOM = 8;
+const BOTTOM = 12;
+/** Steps of time by key, while the ribbon has the focus. */
+const MOVES: Readonly<Record<string, number>> = {
+  ArrowUp: -1,
+  ArrowLeft: -1,
+  ArrowDown: 1,
+  ArrowRight: 1,
+  PageUp: -10,
+  PageDown: 10,
+};
 
 /** Longitude–time diagram of the band, and the control of time: a click or a pull goes to that day. */
 export function Ribbon({
@@ -48,6 +58,8 @@ export function Ribbon({
   const { span, ribbon: numbers } = ribbon;
   const [from, to] = span;
   const n = to - from;
+  // Between days there is weather; between the steps of a record that is no time there is nothing.
+  const isDiscrete = field.steps.kind !== "time" || n < 3;
   const plotWidth = width - LEFT - RIGHT;
   const plotHeight = height - TOP - BOTTOM;
   const { data, layout } = useMemo(() => {
@@ -62,19 +74,13 @@ export function Ribbon({
       order.push(order[0] as number);
       x.push((x[0] as number) + 360);
     }
-    const departs = of === "anomaly" && numbers.background !== null;
-    const z = Array.from({ length: n }, (_, t) => {
-      const base = t * nLon;
-      let mean = 0;
-      if (!departs) for (let i = 0; i < nLon; i++) mean += (numbers.values[base + i] as number) / nLon;
-      return order.map(
-        (i) => (numbers.values[base + i] as number) - (departs ? (numbers.background?.[base + i] as number) : mean),
-      );
-    });
+    const shaded = departures(numbers.values, of === "anomaly" ? numbers.background : null, nLon);
+    const z = Array.from({ length: n }, (_, t) => order.map((i) => shaded[t * nLon + i]));
     const colours = [...tokens.below].reverse().concat(tokens.sheet, tokens.sheet, tokens.above);
+    const bands = [...tokens.below].reverse().concat(tokens.sheet, tokens.above);
     const s = shadingStep;
     const trace = {
-      type: n > 1 ? "contour" : "heatmap",
+      type: isDiscrete ? "heatmap" : "contour",
       x,
       y: Array.from({ length: n }, (_, i) => i),
       z,
@@ -84,19 +90,26 @@ export function Ribbon({
       zmin: -7.5 * s,
       zmax: 7.5 * s,
       autocontour: false,
+      zsmooth: false,
       contours: { start: -7 * s, end: 7 * s, size: s, coloring: "fill", showlines: false },
       line: { width: 0 },
-      colorscale: colours.map((colour, i) => [i / 15, colour]),
+      // Bands with sharp edges: a heat map needs each colour twice, a filled contour takes one per band.
+      colorscale: isDiscrete
+        ? bands.flatMap((colour, i) => [
+            [i / bands.length, colour],
+            [(i + 1) / bands.length, colour],
+          ])
+        : colours.map((colour, i) => [i / 15, colour]),
     } as unknown as Partial<Data>;
     const frame: Partial<Layout> = {
       margin: { l: 0, r: 0, t: 0, b: 0 },
       paper_bgcolor: "rgba(0,0,0,0)",
       plot_bgcolor: "rgba(0,0,0,0)",
       xaxis: { visible: false, range: [-180, 180], fixedrange: true },
-      yaxis: { visible: false, range: n > 1 ? [n - 1, 0] : [0.5, -0.5], fixedrange: true },
+      yaxis: { visible: false, range: isDiscrete ? [n - 0.5, -0.5] : [n - 1, 0], fixedrange: true },
     };
     return { data: [trace], layout: frame };
-  }, [field, numbers, n, of, shadingStep, tokens]);
+  }, [field, numbers, n, isDiscrete, of, shadingStep, tokens]);
   const land = useMemo(() => {
     const projection = geoEquirectangular()
       .scale(plotWidth / (2 * Math.PI))
@@ -107,15 +120,26 @@ export function Ribbon({
       ]);
     return geoPath(projection)(LAND.coarse as unknown as GeoPermissibleObjects) ?? "";
   }, [plotWidth]);
-  const yOf = (index: number): number => TOP + (n > 1 ? ((index - from) / (n - 1)) * plotHeight : plotHeight / 2);
+  /** Height of a step, and where the first step stands. */
+  const perStep = plotHeight / (isDiscrete ? n : n - 1);
+  const start = TOP + (isDiscrete ? perStep / 2 : 0);
+  const yOf = (index: number): number => start + (index - from) * perStep;
   const xOf = (degrees: number): number => LEFT + ((westEast(degrees) + 180) / 360) * plotWidth;
   const follow = (event: PointerEvent<HTMLDivElement>): void => {
     const box = event.currentTarget.getBoundingClientRect();
-    const share = (event.clientY - box.top - TOP) / plotHeight;
-    onStep(Math.min(to - 1, Math.max(from, from + Math.round(share * (n - 1)))));
+    const index = from + Math.round((event.clientY - box.top - start) / perStep);
+    onStep(Math.min(to - 1, Math.max(from, index)));
   };
   const ticks = stepTicks(field.steps, from, to, 12);
   const here = yOf(step);
+  const press = (event: KeyboardEvent<HTMLDivElement>): void => {
+    const move = MOVES[event.key];
+    if (move === undefined || event.ctrlKey || event.metaKey || event.altKey) return;
+    // The window's own arrow keys move the cursor over the map; here they go through time.
+    event.preventDefault();
+    event.stopPropagation();
+    onStep(step + move);
+  };
   const flag = stepFlag(field.steps, step);
   const leaders = useMemo(() => {
     if (series === null) return [];
@@ -129,7 +153,7 @@ export function Ribbon({
     }
     return runs;
   }, [series, from, to]);
-  const half = n > 1 ? plotHeight / (n - 1) / 2 : plotHeight / 2;
+  const half = perStep / 2;
   const clip = (y: number): number => Math.min(TOP + plotHeight, Math.max(TOP, y));
   const [under, over] = theme === "light" ? [tokens.marker, tokens.ink] : [tokens.sheet, tokens.marker];
   return (
@@ -146,6 +170,7 @@ export function Ribbon({
       data-testid="ribbon"
       data-top={TOP}
       data-height={plotHeight}
+      onKeyDown={press}
       onPointerDown={(event) => {
         event.currentTarget.setPointerCapture(event.pointerId);
         follow(event);

@@ -50,10 +50,11 @@ export function withProgress(tasks: readonly TaskProgress[], report: TaskProgres
   return report.done >= 1 ? others : [...others, report];
 }
 
-/** Files of the case with some added; one of the same name takes the earlier one's place. */
+/** Files of the case with some added; one of the same name takes the earlier one's place, in the list too. */
 export function withFiles(files: readonly CaseFile[], added: readonly CaseFile[]): readonly CaseFile[] {
-  const names = new Set(added.map(({ name }) => name));
-  return [...files.filter(({ name }) => !names.has(name)), ...added];
+  const replaced = files.map((file) => added.find(({ name }) => name === file.name) ?? file);
+  const known = new Set(files.map(({ name }) => name));
+  return [...replaced, ...added.filter(({ name }) => !known.has(name))];
 }
 
 /** The awaited files that are still missing once `come` are there. */

@@ -1,5 +1,5 @@
-const MINUS = "−";
-const NARROW_SPACE = " ";
+const MINUS = "\u2212";
+const NARROW_SPACE = "\u202f";
 
 /** A number for the screen: true minus, thousands parted by a narrow space; a dash where it is missing. */
 export function numberText(value: number, digits = 0): string {

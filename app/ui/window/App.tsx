@@ -1,31 +1,31 @@
 import { type DragEvent, useCallback, useEffect, useRef, useState } from "react";
 import { withChart, withMove, withStep, withTheme, withTurn, withTurnToCursor, withWavesOf } from "../case/actions.ts";
 import { caseText } from "../case/case-text.ts";
+import { waveSpan } from "../case/step-span.ts";
 import { waveRecipe } from "../case/wave-recipe.ts";
-import { chartPng, chartSvg } from "../chart/export-chart.ts";
-import { Ribbon } from "../ribbon/Ribbon.tsx";
 import { useNumbers } from "../session/use-numbers.ts";
 import { useSession, useSessionState } from "../session/use-session.tsx";
-import { digitsOf, signedText, unitText } from "../text/number-text.ts";
-import { bandText, latitudeText, longitudeText } from "../text/place-text.ts";
-import { stepHeading, stepLine } from "../text/step-name.ts";
+import { stepLine } from "../text/step-name.ts";
 import { cssVariables } from "../theme/tokens.ts";
-import { backgroundName } from "./BackgroundChoice.tsx";
+import { BackgroundCard } from "./BackgroundCard.tsx";
 import { CaseBar } from "./CaseBar.tsx";
-import { BandCard, ExportCard, FilesCard, KeysCard, MethodCard } from "./cards.tsx";
+import { BandCard, ExportCard, KeysCard, MethodCard } from "./cards.tsx";
 import { type CommandName, commandOf } from "./commands.ts";
+import { cursorWords } from "./cursor-words.ts";
 import { download, fileStem } from "./download.ts";
+import { type ExportKind, exported, tableOf } from "./exports.ts";
+import { FilesCard } from "./FilesCard.tsx";
 import { Foot } from "./Foot.tsx";
 import { Notices } from "./Notices.tsx";
 import { Rail } from "./Rail.tsx";
+import { RibbonColumn } from "./RibbonColumn.tsx";
 import { Stage } from "./Stage.tsx";
 import { usePicture } from "./use-picture.ts";
-import { useSize } from "./use-size.ts";
-import { waveCsv } from "./wave-csv.ts";
 
-export type CardName = "keys" | "method" | "files" | "export" | "band" | "open";
+export type CardName = "keys" | "method" | "files" | "export" | "band" | "background" | "open";
 
 const PLAY_MS = 160;
+const COPIED_MS = 1500;
 
 /** Colours of the theme, put on the page. */
 function useTheme(theme: "light" | "night"): void {
@@ -47,12 +47,12 @@ export function App() {
   const [isOver, setIsOver] = useState(false);
   const [copied, setCopied] = useState(false);
   const fileInput = useRef<HTMLInputElement>(null);
-  const ribbonBox = useSize<HTMLDivElement>();
+  const { field, waves, frame } = numbers;
   useTheme(kept.theme);
-  const { field } = numbers;
+  useEffect(() => {
+    document.title = field === null ? "Isohypse" : `${kept.title} – Isohypse`;
+  }, [field, kept.title]);
   const nSteps = field?.steps.values.length ?? 0;
-  // Plotly waits for the first chart: it takes seconds to load.
-  const isReady = picture.layers !== null;
 
   const open = useCallback(async () => {
     setCard(null);
@@ -62,52 +62,28 @@ export function App() {
     () => download(`${fileStem(kept.title)}.case.json`, caseText(kept), "application/json"),
     [kept],
   );
-  const csv = (): string =>
-    field === null
-      ? ""
-      : waveCsv(picture.readings, stepLine(field.steps, kept.cursor.step), bandText(kept.waves.band), field.units);
   const copy = (): void => {
-    void navigator.clipboard.writeText(csv()).then(
+    if (field === null) return;
+    const csv = tableOf(kept, field, picture);
+    navigator.clipboard.writeText(csv).then(
       () => {
         setCopied(true);
-        setTimeout(() => setCopied(false), 1500);
+        setTimeout(() => setCopied(false), COPIED_MS);
       },
-      () => download(`${fileStem(kept.title)}-waves.csv`, csv(), "text/csv"),
+      () => download(`${fileStem(kept.title)}-waves.csv`, csv, "text/csv"),
     );
   };
-  const notes = (): string[] =>
-    field === null
-      ? []
-      : [
-          picture.headline?.main ?? "",
-          `${field.file}, ${field.variable} (${field.why}); background: ${backgroundName(kept.background)}. Isohypse ${state.version}.`,
-          "Guidance, not a warning. Warnings and their wording are the responsible national service’s and a licensed forecaster’s.",
-        ];
-  const exportAs = (what: "png" | "svg" | "csv" | "recipe"): void => {
-    const stem = fileStem(kept.title);
+  const exportAs = (what: ExportKind): void => {
     setCard(null);
     if (field === null) return;
-    if (what === "csv") download(`${stem}-waves.csv`, csv(), "text/csv");
-    else if (what === "recipe")
-      download(
-        `${stem}.recipe.json`,
-        `${JSON.stringify(waveRecipe(kept, field, numbers.waves.value?.span ?? numbers.span), null, 2)}\n`,
-        "application/json",
-      );
-    else if (picture.layers !== null) {
-      const [width, height] = kept.chart.kind === "hemisphere" ? [640, 640] : [960, 460];
-      if (what === "svg")
-        download(
-          `${stem}-chart.svg`,
-          chartSvg(picture.view, picture.layers, kept.theme, width as number, height as number, notes()),
-          "image/svg+xml",
-        );
-      else
-        void chartPng(picture.view, picture.layers, kept.theme, width as number, height as number, notes()).then(
-          (blob) => download(`${stem}-chart.png`, blob),
-          (error: unknown) => session.report("The picture was not made.", String(error)),
-        );
-    }
+    const recipe = waveRecipe(kept, field, waves.value?.span ?? waveSpan(field.steps, numbers.span));
+    exported(what, kept, field, picture, recipe, state.version).then(
+      (made) => {
+        if (made !== null) download(`${fileStem(kept.title)}${made.suffix}`, made.content, made.type);
+      },
+      (error: unknown) =>
+        session.report("The picture was not made.", error instanceof Error ? error.message : String(error)),
+    );
   };
   const goTo = useCallback((step: number) => session.act((now) => withStep(now, step, nSteps)), [session, nSteps]);
 
@@ -169,8 +145,10 @@ export function App() {
         save();
         break;
       case "level":
+      case "field":
       case "background":
       case "latitude":
+      case "of":
         document.getElementById(`choose-${command}`)?.focus();
         break;
       case "theme":
@@ -189,7 +167,7 @@ export function App() {
   newest.current = run;
   useEffect(() => {
     const press = (event: KeyboardEvent): void => {
-      const target = event.target as HTMLElement | null;
+      const target = event.target instanceof Element ? event.target : null;
       const isTyping =
         target !== null && (target.matches("input, textarea") || (target.matches("select") && event.key !== "Escape"));
       const command = commandOf(event, isTyping);
@@ -220,8 +198,6 @@ export function App() {
     setIsOver(false);
     void session.openFiles([...event.dataTransfer.files]);
   };
-  const heading = field === null ? null : stepHeading(field.steps, kept.cursor.step);
-  const { ribbon, waves, frame } = numbers;
   return (
     // biome-ignore lint/a11y/noStaticElementInteractions: the whole window takes dropped files; the button does the same by key
     <div
@@ -262,63 +238,18 @@ export function App() {
           )}
         </main>
       ) : (
-        <Stage numbers={numbers} picture={picture} isReady={isReady} onCard={setCard} onCopy={copy} />
+        <Stage numbers={numbers} picture={picture} onCard={setCard} onCopy={copy} />
       )}
       <aside className="ribbon-column">
-        {field !== null && heading !== null && (
-          <>
-            <div className="date">
-              <b data-testid="date">{heading.day}</b> <span>{heading.hour}</span>
-              <span className="spring" />
-              <button
-                type="button"
-                className="plain"
-                aria-label="A step earlier"
-                onClick={() => goTo(kept.cursor.step - 1)}
-              >
-                ←
-              </button>
-              <button
-                type="button"
-                className="plain"
-                aria-label="A step later"
-                onClick={() => goTo(kept.cursor.step + 1)}
-              >
-                →
-              </button>
-              <button
-                type="button"
-                className="plain"
-                aria-label={playing ? "Stop" : "Run through time"}
-                onClick={() => run("play")}
-              >
-                {playing ? "■" : "▷"}
-              </button>
-            </div>
-            <p className="note">
-              {field.quantity === "geopotential_height" ? "Height" : field.longName}
-              {kept.waves.of === "anomaly" ? " anomaly" : ", departure from the zonal mean,"} along{" "}
-              {bandText(kept.waves.band)}
-            </p>
-            <div className="ribbon-box" ref={ribbonBox.ref}>
-              {ribbon.error !== null && <p className="error-words">{ribbon.error}</p>}
-              {ribbon.value !== null && isReady && ribbonBox.width > 0 && ribbon.value.field.key === field.key && (
-                <Ribbon
-                  ribbon={ribbon.value}
-                  field={ribbon.value.field}
-                  of={kept.waves.of}
-                  shadingStep={picture.step}
-                  series={waves.value}
-                  step={kept.cursor.step}
-                  lon={picture.cursor?.lon ?? kept.cursor.lon}
-                  theme={kept.theme}
-                  width={ribbonBox.width}
-                  height={ribbonBox.height}
-                  onStep={goTo}
-                />
-              )}
-            </div>
-          </>
+        {field !== null && (
+          <RibbonColumn
+            field={field}
+            numbers={numbers}
+            picture={picture}
+            isPlaying={playing}
+            onStep={goTo}
+            onPlay={() => run("play")}
+          />
         )}
       </aside>
       <Foot />
@@ -331,6 +262,7 @@ export function App() {
       )}
       {card === "keys" && <KeysCard onClose={() => setCard(null)} />}
       {card === "files" && <FilesCard onClose={() => setCard(null)} onOpen={() => void open()} />}
+      {card === "background" && field !== null && <BackgroundCard steps={field.steps} onClose={() => setCard(null)} />}
       {card === "band" && <BandCard onClose={() => setCard(null)} />}
       {card === "export" && <ExportCard onClose={() => setCard(null)} onExport={exportAs} />}
       {card === "method" && field !== null && (
@@ -338,11 +270,7 @@ export function App() {
           series={waves.value}
           field={field}
           when={stepLine(field.steps, kept.cursor.step)}
-          atCursor={
-            picture.cursor === null
-              ? "nothing"
-              : `${latitudeText(picture.cursor.lat)} ${longitudeText(picture.cursor.lon, 1)}: ${signedText(picture.cursor.sum, digitsOf(field.units))} ${unitText(field.units)}; ${picture.bars.map(({ label, value }) => `${label} ${signedText(value, digitsOf(field.units))}`).join(", ")}`
-          }
+          atCursor={cursorWords(picture, field.units)}
           onClose={() => setCard(null)}
           onCopy={copy}
         />

@@ -6,6 +6,8 @@ interface BackgroundChoiceProps {
   readonly background: BackgroundSpec;
   readonly steps: StepAxis;
   onChange(background: BackgroundSpec): void;
+  /** The card with every background and its numbers is asked for. */
+  onOther(): void;
 }
 
 /** What a background is called on the screen. */
@@ -44,7 +46,7 @@ function choices(steps: StepAxis): readonly BackgroundSpec[] {
 }
 
 /** What anomalies depart from. */
-export function BackgroundChoice({ background, steps, onChange }: BackgroundChoiceProps) {
+export function BackgroundChoice({ background, steps, onChange, onOther }: BackgroundChoiceProps) {
   const offered = choices(steps);
   const text = JSON.stringify(background);
   const all = offered.some((one) => JSON.stringify(one) === text) ? offered : [...offered, background];
@@ -55,13 +57,16 @@ export function BackgroundChoice({ background, steps, onChange }: BackgroundChoi
         id="choose-background"
         data-testid="choose-background"
         value={text}
-        onChange={(event) => onChange(JSON.parse(event.target.value) as BackgroundSpec)}
+        onChange={(event) =>
+          event.target.value === "other" ? onOther() : onChange(JSON.parse(event.target.value) as BackgroundSpec)
+        }
       >
         {all.map((one) => (
           <option key={JSON.stringify(one)} value={JSON.stringify(one)}>
             {backgroundName(one)}
           </option>
         ))}
+        <option value="other">other …</option>
       </select>
     </label>
   );

@@ -1,8 +1,8 @@
-import { QUANTITIES } from "../../../core/field/quantity.ts";
 import type { FieldDescription } from "../../../core/formats/dataset.ts";
 import { withBackground, withBand, withField, withLevel, withTheme, withTitle, withWavesOf } from "../case/actions.ts";
 import { usableFields } from "../case/settled-case.ts";
 import { useSession, useSessionState } from "../session/use-session.tsx";
+import { fieldEntry } from "../text/field-name.ts";
 import { bandText } from "../text/place-text.ts";
 import type { CardName } from "./App.tsx";
 import { BackgroundChoice, backgroundName } from "./BackgroundChoice.tsx";
@@ -17,12 +17,6 @@ interface CaseBarProps {
 /** True if the files say of themselves that their data are invented. */
 export function isInvented(about: Readonly<Record<string, string>>): boolean {
   return /\binvented\b/i.test(`${about.title ?? ""} ${about.comment ?? ""}`);
-}
-
-function fieldName(field: FieldDescription): string {
-  return field.quantity === null
-    ? field.variable
-    : `${QUANTITIES[field.quantity].symbol}, ${QUANTITIES[field.quantity].title.toLowerCase()}`;
 }
 
 const BANDS: readonly (readonly [number, number])[] = [
@@ -51,6 +45,8 @@ export function CaseBar({ field, onCard, onSave }: CaseBarProps) {
   const south = kept.chart.hemisphere === "south";
   const bands = BANDS.map(([a, b]) => (south ? ([-b, -a] as const) : ([a, b] as const)));
   const known = bands.some(([a, b]) => a === kept.waves.band[0] && b === kept.waves.band[1]);
+  const isNamedTwice = (one: FieldDescription): boolean =>
+    one.quantity !== null && fields.filter(({ quantity }) => quantity === one.quantity).length > 1;
   const several = new Set(fields.map(({ file }) => file)).size > 1;
   return (
     <header className="case-bar">
@@ -77,6 +73,9 @@ export function CaseBar({ field, onCard, onSave }: CaseBarProps) {
           defaultValue={kept.title}
           size={Math.max(8, Math.min(18, kept.title.length))}
           aria-label="Title of the case"
+          onKeyDown={(event) => {
+            if (event.key === "Enter") event.currentTarget.blur();
+          }}
           onBlur={(event) => session.act((now) => withTitle(now, event.target.value))}
         />
       </label>
@@ -97,14 +96,15 @@ export function CaseBar({ field, onCard, onSave }: CaseBarProps) {
           <label className="choice">
             <span>Field</span>
             <select
+              id="choose-field"
               value={field.key}
               data-testid="choose-field"
               onChange={(event) => session.act((now) => withField(now, event.target.value))}
             >
               {fields.map((one) => (
                 <option key={one.key} value={one.key}>
-                  {fieldName(one)}
-                  {several ? ` (${one.file})` : ""}
+                  {fieldEntry(one)}
+                  {several ? ` (${one.file})` : isNamedTwice(one) ? ` (${one.variable})` : ""}
                 </option>
               ))}
             </select>
@@ -131,6 +131,7 @@ export function CaseBar({ field, onCard, onSave }: CaseBarProps) {
             background={kept.background}
             steps={field.steps}
             onChange={(background) => session.act((now) => withBackground(now, background))}
+            onOther={() => onCard("background")}
           />
           <label className="choice">
             <span>Latitude</span>
@@ -157,6 +158,7 @@ export function CaseBar({ field, onCard, onSave }: CaseBarProps) {
             <label className="choice">
               <span>Waves of</span>
               <select
+                id="choose-of"
                 data-testid="choose-of"
                 value={kept.waves.of}
                 onChange={(event) =>

@@ -21,12 +21,14 @@ export function Rail({ picture, theme, isWaiting }: RailProps) {
         <span className="question-words">
           {headline?.main ?? (isWaiting ? "Computing …" : "Which waves shape the flow")}
         </span>
-        <svg width="184" height="34" aria-hidden="true">
-          {readings.map(({ k, amplitude }, i) => {
-            const height = Math.max(1, (30 * (amplitude || 0)) / most);
-            return <rect key={k} x={i * 23} y={32 - height} width={20} height={height} fill={waveColour(k, theme)} />;
-          })}
-        </svg>
+        {readings.some(({ amplitude }) => amplitude > 0) && (
+          <svg width="184" height="34" aria-hidden="true">
+            {readings.map(({ k, amplitude }, i) => {
+              const height = Math.max(1, (30 * (amplitude || 0)) / most);
+              return <rect key={k} x={i * 23} y={32 - height} width={20} height={height} fill={waveColour(k, theme)} />;
+            })}
+          </svg>
+        )}
       </button>
     </nav>
   );

@@ -6,10 +6,13 @@ import { WaveDials } from "../dials/WaveDials.tsx";
 import { AmplitudePlot } from "../plots/AmplitudePlot.tsx";
 import type { Numbers } from "../session/use-numbers.ts";
 import { useSession, useSessionState } from "../session/use-session.tsx";
+import { useSlow } from "../session/use-slow.ts";
 import { digitsOf, signedText, unitText } from "../text/number-text.ts";
 import { bandText } from "../text/place-text.ts";
 import type { CardName } from "./App.tsx";
+import { TurnLeftIcon, TurnRightIcon } from "./icons.tsx";
 import { KeyButton } from "./KeyButton.tsx";
+import { Trouble } from "./Trouble.tsx";
 import type { Picture } from "./use-picture.ts";
 import { useSize } from "./use-size.ts";
 import { WaveTable } from "./WaveTable.tsx";
@@ -17,13 +20,12 @@ import { WaveTable } from "./WaveTable.tsx";
 interface StageProps {
   readonly numbers: Numbers;
   readonly picture: Picture;
-  readonly isReady: boolean;
   onCard(card: CardName): void;
   onCopy(): void;
 }
 
 /** The question's answer: a sentence, the chart, and what stands beside it. */
-export function Stage({ numbers, picture, isReady, onCard, onCopy }: StageProps) {
+export function Stage({ numbers, picture, onCard, onCopy }: StageProps) {
   const session = useSession();
   const { kept } = useSessionState();
   const [picked, setPicked] = useState<number | null>(null);
@@ -31,21 +33,29 @@ export function Stage({ numbers, picture, isReady, onCard, onCopy }: StageProps)
   const sideBox = useSize<HTMLDivElement>();
   const plotBox = useSize<HTMLDivElement>();
   const dialBox = useSize<HTMLDivElement>();
-  const { field, frame, waves } = numbers;
+  const { field, frame, waves, background } = numbers;
   const { layers, bars, cursor, readings, dials } = picture;
   const chosen = picked ?? picture.leader;
   const units = field?.units ?? "";
-  const error = frame.error ?? null;
-  if (field === null) return null;
   const along = bandText(kept.waves.band);
   const waveWords = waves.error;
+  const frameSlow = useSlow(frame.isWaiting || background.isWaiting);
+  const wavesSlow = useSlow(waves.isWaiting);
   const { chart } = kept;
+  if (field === null) return null;
+  const isMissing = waves.value !== null && !waves.isWaiting && picture.headline === null;
+  const silence =
+    waveWords !== null
+      ? "This field has no zonal waves"
+      : isMissing
+        ? `No waves along ${along}: values are missing there`
+        : `Computing the waves along ${along} …`;
+  const isSingle = field.steps.values.length < 2;
   return (
     <main className="stage">
       <div className="stage-head">
         <h1 aria-live="polite" data-testid="headline" data-waiting={waves.isWaiting}>
-          {picture.headline?.main ??
-            (waveWords === null ? `Computing the waves along ${along} …` : "This field has no zonal waves")}
+          {picture.headline?.main ?? silence}
         </h1>
         <KeyButton command="method" onPress={() => onCard("method")}>
           Method
@@ -54,20 +64,29 @@ export function Stage({ numbers, picture, isReady, onCard, onCopy }: StageProps)
           Numbers
         </KeyButton>
       </div>
-      <p className="second">{picture.headline?.second ?? waveWords ?? ""}</p>
+      <p className="second" data-failed={waveWords !== null}>
+        {waveWords ?? picture.headline?.second ?? (isMissing ? "Choose another latitude, level or step." : "")}
+        {waveWords !== null && (
+          <button type="button" className="plain again" onClick={waves.retry}>
+            Try again
+          </button>
+        )}
+      </p>
       <div className="stage-body">
         <div className="chart-column">
           <div className="chart-box" ref={chartBox.ref}>
-            {error !== null && (
-              <section className="notice" data-kind="error" data-testid="frame-error">
-                <b>This step could not be read.</b> {error}
-                <p>
-                  <button type="button" onClick={frame.retry}>
-                    Try again
-                  </button>
-                </p>
-              </section>
+            {frame.error !== null && (
+              <Trouble
+                title="This step could not be read."
+                words={frame.error}
+                testId="frame-error"
+                onRetry={frame.retry}
+              />
             )}
+            {frame.error === null && background.error !== null && (
+              <Trouble title="There is no such background." words={background.error} onRetry={background.retry} />
+            )}
+            {frameSlow && <Computing words={frame.isWaiting ? "Reading the step" : "Fitting the background"} />}
             {layers !== null && chartBox.width > 0 && (
               <Chart
                 view={picture.view}
@@ -75,7 +94,7 @@ export function Stage({ numbers, picture, isReady, onCard, onCopy }: StageProps)
                 theme={kept.theme}
                 width={chartBox.width}
                 height={chartBox.height}
-                isWaiting={error !== null}
+                isWaiting={frame.error !== null || (frameSlow && frame.isWaiting)}
                 onCursor={(lat, lon) => session.act((now) => withPlace(now, lat, lon, field))}
                 onTurn={(turn) => session.act((now) => withChart(now, { turn }))}
               />
@@ -106,7 +125,7 @@ export function Stage({ numbers, picture, isReady, onCard, onCopy }: StageProps)
                 value={chart.shading}
                 options={[
                   ["anomaly", "Anomaly"],
-                  ["field", "Full field"],
+                  ["field", "Field"],
                 ]}
                 onChange={(shading) =>
                   session.act((now) => withWavesOf(withChart(now, { shading: shading as "field" }), shading as "field"))
@@ -115,17 +134,20 @@ export function Stage({ numbers, picture, isReady, onCard, onCopy }: StageProps)
             )}
             <span className="turns">
               <button type="button" aria-label="Turn 15° west" onClick={() => session.act((now) => withTurn(now, -15))}>
-                ⟲
+                <TurnLeftIcon />
               </button>
               <button type="button" aria-label="Turn 15° east" onClick={() => session.act((now) => withTurn(now, 15))}>
-                ⟳
+                <TurnRightIcon />
               </button>
             </span>
           </div>
         </div>
         <div className="side" ref={sideBox.ref}>
           <h2>
-            What makes {cursor === null ? "the value" : `${signedText(cursor.sum, digitsOf(units))} ${unitText(units)}`}{" "}
+            What makes{" "}
+            {cursor === null || Number.isNaN(cursor.sum)
+              ? "the value"
+              : `${signedText(cursor.sum, digitsOf(units))} ${unitText(units)}`}{" "}
             at the cursor
           </h2>
           {cursor?.of === "zonal-mean" && <p className="note">departure from the zonal mean</p>}
@@ -142,7 +164,8 @@ export function Stage({ numbers, picture, isReady, onCard, onCopy }: StageProps)
           )}
           <h2>{field.steps.kind === "time" ? "Amplitude, last 20 days" : `Amplitude by ${field.steps.name}`}</h2>
           <div className="plot-box" ref={plotBox.ref}>
-            {waves.value !== null && isReady && plotBox.width > 0 && (
+            {isSingle && <p className="note">This record has one step.</p>}
+            {waves.value !== null && layers !== null && !isSingle && plotBox.width > 0 && (
               <AmplitudePlot
                 series={waves.value}
                 steps={field.steps}
@@ -159,7 +182,7 @@ export function Stage({ numbers, picture, isReady, onCard, onCopy }: StageProps)
             Waves along {along}
             {kept.waves.of === "field" ? "" : ", anomaly"}
           </h2>
-          <div style={{ opacity: waves.isWaiting ? 0.4 : 1 }}>
+          <div style={{ opacity: wavesSlow ? 0.4 : 1 }}>
             <WaveTable readings={readings} units={units} theme={kept.theme} chosen={chosen} onChoose={setPicked} />
           </div>
         </div>
@@ -187,6 +210,18 @@ export function Stage({ numbers, picture, isReady, onCard, onCopy }: StageProps)
         )}
       </div>
     </main>
+  );
+}
+
+/** Over a picture that is being made anew: the old one stays below, dimmed. */
+function Computing({ words }: { readonly words: string }) {
+  const { tasks } = useSessionState();
+  const task = tasks.at(-1);
+  return (
+    <div className="computing" role="status">
+      <i style={{ width: `${Math.round(100 * (task?.done ?? 0))}%` }} />
+      <span>{words} …</span>
+    </div>
   );
 }
 

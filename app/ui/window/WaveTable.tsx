@@ -70,7 +70,11 @@ export function WaveTable({ readings, units, theme, chosen, onChoose }: WaveTabl
               >
                 {drift.text}
               </td>
-              {cell("share", reading.share, `${numberText(100 * reading.share)} %`)}
+              {cell(
+                "share",
+                reading.share,
+                Number.isFinite(reading.share) ? `${numberText(100 * reading.share)} %` : "–",
+              )}
             </tr>
           );
         })}

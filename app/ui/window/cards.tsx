@@ -1,5 +1,5 @@
 import { useState } from "react";
-import { QUANTITIES, type Quantity } from "../../../core/field/quantity.ts";
+import type { OptionSpec, OptionValue } from "../../../core/diagnostics/entry.ts";
 import type { FieldDescription } from "../../../core/formats/dataset.ts";
 import { diagnosticOf } from "../../../core/recipe/catalogue.ts";
 import { withBand } from "../case/actions.ts";
@@ -37,13 +37,19 @@ interface MethodProps extends CloseProps {
   readonly series: WaveSeries | null;
   readonly field: FieldDescription;
   readonly when: string;
-  readonly atCursor: string;
+  readonly atCursor: readonly string[];
   onCopy(): void;
 }
 
-function optionText(value: unknown): string {
-  if (value === null) return "none";
-  return Array.isArray(value) ? value.join(" to ") : String(value);
+/** An option in force in words; null for one that asks for nothing. */
+function optionText(option: OptionSpec, value: OptionValue): string | null {
+  if (value === null) return null;
+  const units = option.units?.replace("degrees_north", "°N").replace(/^days$/, " days") ?? "";
+  const choice = option.kind === "choice" ? option.choices.find((one) => one.value === value)?.title : undefined;
+  const rounded = (one: unknown): unknown => (typeof one === "number" ? Number(one.toPrecision(6)) : one);
+  const [first, last] = (Array.isArray(value) ? value : [value, value]).map(rounded);
+  const text = choice ?? (first === last ? String(first) : `${first} to ${last}`);
+  return `${option.title.toLowerCase()} ${text}${units}`;
 }
 
 export function MethodCard({ series, field, when, atCursor, onClose, onCopy }: MethodProps) {
@@ -59,7 +65,7 @@ export function MethodCard({ series, field, when, atCursor, onClose, onCopy }: M
         <dt>options</dt>
         <dd>
           {method.options
-            .map((option) => `${option.title.toLowerCase()}: ${optionText(options[option.name] ?? option.default)}`)
+            .flatMap((option) => optionText(option, options[option.name] ?? option.default) ?? [])
             .join("; ")}
           ; background: {backgroundName(kept.background)}
         </dd>
@@ -72,7 +78,11 @@ export function MethodCard({ series, field, when, atCursor, onClose, onCopy }: M
           {field.file}, {field.variable}: {field.why}; {when}
         </dd>
         <dt>at cursor</dt>
-        <dd>{atCursor}</dd>
+        <dd>
+          {atCursor.map((words) => (
+            <div key={words}>{words}</div>
+          ))}
+        </dd>
         {(series?.result.notes.length ?? 0) > 0 && (
           <>
             <dt>notes</dt>
@@ -158,104 +168,5 @@ export function ExportCard({ onClose, onExport }: ExportProps) {
         ))}
       </ul>
     </Card>
-  );
-}
-
-interface FilesProps extends CloseProps {
-  onOpen(): void;
-}
-
-export function FilesCard({ onClose, onOpen }: FilesProps) {
-  const session = useSession();
-  const { contents } = useSessionState();
-  return (
-    <Card title="Files" testId="card-files" onClose={onClose}>
-      {contents.length === 0 && <p>No file is open.</p>}
-      {contents.map((file) => (
-        <section key={file.file} className="file">
-          <h3>
-            {file.file}{" "}
-            <span className="note">
-              {file.format}, {(file.bytes / 1e6).toFixed(1)} MB
-            </span>
-            <button type="button" className="plain" onClick={() => void session.closeFile(file.file)}>
-              Close file
-            </button>
-          </h3>
-          {(file.about.title ?? file.about.comment) !== undefined && (
-            <p className="note">{[file.about.title, file.about.comment].filter(Boolean).join(". ")}</p>
-          )}
-          <table className="fields">
-            <tbody>
-              {file.fields.map((field) => (
-                <tr key={field.key}>
-                  <th scope="row">{field.variable}</th>
-                  <td>{field.quantity === null ? <WhatIsIt field={field} /> : QUANTITIES[field.quantity].title}</td>
-                  <td>{field.why}</td>
-                  <td>
-                    {field.grid.lat.length} × {field.grid.lon.length}
-                    {field.levels === null ? "" : `, ${Array.from(field.levels).join(", ")} hPa`},{" "}
-                    {field.steps.values.length} {field.steps.kind === "time" ? "times" : field.steps.name}
-                  </td>
-                </tr>
-              ))}
-              {file.leftOut.map(({ variable, why }) => (
-                <tr key={variable} className="left-out">
-                  <th scope="row">{variable}</th>
-                  <td>left out</td>
-                  <td colSpan={2}>{why}</td>
-                </tr>
-              ))}
-            </tbody>
-          </table>
-          {file.notes.map((note) => (
-            <p key={note} className="note">
-              {note}
-            </p>
-          ))}
-        </section>
-      ))}
-      <p>
-        <button type="button" onClick={onOpen}>
-          Open files <kbd>O</kbd>
-        </button>{" "}
-        <button type="button" onClick={() => void session.openSample()}>
-          Open the sample case
-        </button>
-      </p>
-    </Card>
-  );
-}
-
-const SI_UNITS: Readonly<Record<Quantity, string>> = {
-  geopotential_height: "m",
-  eastward_wind: "m s-1",
-  northward_wind: "m s-1",
-  air_temperature: "K",
-};
-
-/** Where the user says what an unrecognised variable is. */
-function WhatIsIt({ field }: { readonly field: FieldDescription }) {
-  const session = useSession();
-  return (
-    <select
-      aria-label={`What ${field.variable} is`}
-      defaultValue=""
-      data-testid={`what-is-${field.variable}`}
-      onChange={(event) => {
-        const quantity = event.target.value as Quantity;
-        const units = field.unitsInFile === "" ? { units: SI_UNITS[quantity] } : {};
-        void session.correct({ file: field.file, variable: field.variable, quantity, ...units });
-      }}
-    >
-      <option value="" disabled>
-        not recognised: it is …
-      </option>
-      {(Object.keys(QUANTITIES) as Quantity[]).map((quantity) => (
-        <option key={quantity} value={quantity}>
-          {QUANTITIES[quantity].title}
-        </option>
-      ))}
-    </select>
   );
 }

@@ -2,9 +2,11 @@ import { useMemo, useRef } from "react";
 import type { Case } from "../case/case.ts";
 import type { ChartLayers, ChartView, DialWave, ShareBar } from "../chart/types.ts";
 import { type CursorReading, cursorReading } from "../reading/cursor-reading.ts";
+import { departures } from "../reading/departures.ts";
 import { type Headline, headline } from "../reading/headline.ts";
 import type { WaveReading } from "../reading/wave-series.ts";
 import type { Numbers } from "../session/use-numbers.ts";
+import { fieldTitle } from "../text/field-name.ts";
 import { digitsOf, numberText, signedText, unitText } from "../text/number-text.ts";
 import { latitudeText, longitudeText } from "../text/place-text.ts";
 import { stepHeading } from "../text/step-name.ts";
@@ -26,18 +28,6 @@ export interface Picture {
   readonly step: number;
   /** The largest amplitude of the shown span, for the dials' rings. */
   readonly largest: number;
-}
-
-/** The span's departures, from which the shading's step is chosen. */
-function departures(values: Float32Array, background: Float32Array | null, nLon: number): Float32Array {
-  const out = new Float32Array(values.length);
-  for (let row = 0; row < values.length; row += nLon) {
-    let mean = 0;
-    if (background === null) for (let i = 0; i < nLon; i++) mean += (values[row + i] as number) / nLon;
-    for (let i = 0; i < nLon; i++)
-      out[row + i] = (values[row + i] as number) - (background === null ? mean : (background[row + i] as number));
-  }
-  return out;
 }
 
 export function usePicture(kept: Case, numbers: Numbers): Picture {
@@ -66,7 +56,10 @@ export function usePicture(kept: Case, numbers: Numbers): Picture {
       nLon > 0 &&
       (isOfField || ribbonShaded.background !== null)
     ) {
-      const found = shadingStep(departures(ribbonShaded.values, isOfField ? null : ribbonShaded.background, nLon));
+      const along = departures(ribbonShaded.values, isOfField ? null : ribbonShaded.background, nLon);
+      const isGappy = along.filter(Number.isNaN).length > along.length / 2;
+      // A band that is mostly missing says little of the map.
+      const found = shadingStep(isGappy && shaded !== null ? shaded : along);
       steps.current.set(stepKey, found);
       return found;
     }
@@ -124,7 +117,7 @@ export function usePicture(kept: Case, numbers: Numbers): Picture {
     if (at === null || grid === null || shaded === null || cursor === null) return null;
     const { day, hour } = stepHeading(at.field.steps, at.step);
     const digits = digitsOf(units);
-    const name = at.field.quantity === "geopotential_height" ? "Height" : at.field.longName;
+    const name = fieldTitle(at.field);
     const what = isOfField ? "departure from the zonal mean" : "anomaly";
     const level = kept.level === null ? "" : `${kept.level} hPa, `;
     const leading = readings.find(({ k }) => k === leader);
