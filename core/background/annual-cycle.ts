@@ -18,6 +18,11 @@ export function harmonicBasis(phases: Float64Array, harmonics: number): Float64A
   return basis;
 }
 
+/** b_i b_j of step t, packed, written to `into`. */
+export function stepProducts(basis: Float64Array, m: number, t: number, into: Float64Array): void {
+  for (let i = 0, p = 0; i < m; i++) for (let j = 0; j <= i; j++, p++) into[p] = basis[t * m + i] * basis[t * m + j];
+}
+
 /** A pivot this small against the largest, relative, means that the steps do not tell the coefficients apart. */
 const LEAST_PIVOT = 1e-10;
 

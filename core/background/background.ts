@@ -3,44 +3,60 @@ import type { Grid, IndexRange, StepAxis } from "../field/axes.ts";
 import { dayOfYearPhase } from "../field/calendar.ts";
 import { stepsOfPeriod } from "../field/period.ts";
 import type { Slab } from "../field/slab.ts";
-import { fittedCycle, harmonicBasis, packedSize } from "./annual-cycle.ts";
+import { choleskyFactor, fittedCycle, harmonicBasis, packedSize, stepProducts } from "./annual-cycle.ts";
 import type { FittedBackground } from "./fit.ts";
+import { type NormalSums, normalSums } from "./normal-sums.ts";
 import type { BackgroundSpec } from "./spec.ts";
-
-/** A chunk's share of the sums, in buffers of their own. */
-export type BackgroundPart = {
-  /** Σ b_i x, shape (coefficients, cells). */
-  readonly moments: Float64Array<ArrayBuffer>;
-  /** Σ b_i b_j over all steps, packed. */
-  readonly products: Float64Array<ArrayBuffer>;
-  /** The same over the steps that a cell misses, shape (packed, cells); empty if none misses any. */
-  readonly gaps: Float64Array<ArrayBuffer>;
-  /** Steps that each cell misses. */
-  readonly missing: Float64Array<ArrayBuffer>;
-};
 
 /** True for backgrounds that are known only after a pass over the record. */
 export function needsPass(spec: BackgroundSpec): boolean {
   return spec.kind === "record-mean" || spec.kind === "period-mean" || spec.kind === "annual-cycle";
 }
 
-/** The steps that such a pass reads. @throws OptionError if the period holds none, or for an annual cycle of a record that is not a time. */
+/**
+ * The steps that such a pass reads.
+ *
+ * @throws OptionError for an annual cycle of a record that is not a time or covers too little of the year; RecipeError if the
+ * period holds no step.
+ */
 export function backgroundTimes(spec: BackgroundSpec, steps: StepAxis): IndexRange {
-  if (spec.kind === "annual-cycle") requireTime(steps, "An annual cycle");
+  if (spec.kind === "annual-cycle") requireYear(spec.harmonics, steps);
   if (spec.kind === "period-mean") return stepsOfPeriod(steps, [spec.from, spec.to]);
   return [0, steps.values.length];
 }
 
-function requireTime(steps: StepAxis, what: string): void {
+/** What the steps alone decide is said before anything is read. */
+function requireYear(harmonics: number, steps: StepAxis): void {
   if (steps.kind !== "time")
     throw new DataError(
       "OptionError",
-      `${what} needs times, and the record steps along "${steps.name}", which is none. Choose the record's mean, or a mean over part of it.`,
+      `An annual cycle needs times, and the record steps along "${steps.name}", which is none. Choose the record's mean, or a mean over part of it.`,
+    );
+  const nSteps = steps.values.length;
+  const m = 2 * harmonics + 1;
+  const all = phases(steps, [0, nSteps]);
+  const distinct = new Set(Array.from(all, (phase) => phase.toFixed(6))).size;
+  if (distinct < m)
+    throw new DataError(
+      "OptionError",
+      `An annual cycle of ${harmonics} harmonics needs ${m} different days of the year; this record has ${distinct}. Choose fewer harmonics, or the record's mean.`,
+    );
+  const basis = harmonicBasis(all, harmonics);
+  const products = new Float64Array(packedSize(m));
+  const own = new Float64Array(packedSize(m));
+  for (let t = 0; t < nSteps; t++) {
+    stepProducts(basis, m, t, own);
+    for (let p = 0; p < own.length; p++) products[p] += own[p];
+  }
+  if (choleskyFactor(products, m) === null)
+    throw new DataError(
+      "OptionError",
+      `The record's steps cover too little of the year to tell its ${harmonics} harmonics apart. Choose fewer harmonics, or the record's mean.`,
     );
 }
 
 /** Phase of the year at some steps, in [0, 1). */
-function phases(steps: StepAxis, [from, to]: IndexRange): Float64Array {
+export function phases(steps: StepAxis, [from, to]: IndexRange): Float64Array {
   return steps.values.slice(from, to).map((days) => dayOfYearPhase(days, steps.calendar));
 }
 
@@ -63,37 +79,9 @@ export function coefficientCount(spec: BackgroundSpec): number {
  *
  * @param slab The steps `times`, any levels and rows.
  */
-export function backgroundPart(spec: BackgroundSpec, slab: Slab, steps: StepAxis, times: IndexRange): BackgroundPart {
-  const m = coefficientCount(spec);
-  const basis = basisOf(spec, steps, times);
-  const [nTime, nLevel, nLat, nLon] = slab.shape;
-  const cells = nLevel * nLat * nLon;
-  const pairs = packedSize(m);
-  const moments = new Float64Array(m * cells);
-  const missing = new Float64Array(cells);
-  let gaps: Float64Array<ArrayBuffer> = new Float64Array(0);
-  const products = new Float64Array(pairs);
-  for (let t = 0; t < nTime; t++) {
-    for (let i = 0, p = 0; i < m; i++)
-      for (let j = 0; j <= i; j++, p++)
-        products[p] = (products[p] as number) + (basis[t * m + i] as number) * (basis[t * m + j] as number);
-    for (let c = 0; c < cells; c++) {
-      const x = slab.data[t * cells + c] as number;
-      if (!Number.isNaN(x)) {
-        for (let i = 0; i < m; i++)
-          moments[i * cells + c] = (moments[i * cells + c] as number) + (basis[t * m + i] as number) * x;
-        continue;
-      }
-      // What the shared sums count and this cell does not have.
-      if (gaps.length === 0) gaps = new Float64Array(pairs * cells);
-      missing[c] = (missing[c] as number) + 1;
-      for (let i = 0, p = 0; i < m; i++)
-        for (let j = 0; j <= i; j++, p++)
-          gaps[p * cells + c] =
-            (gaps[p * cells + c] as number) + (basis[t * m + i] as number) * (basis[t * m + j] as number);
-    }
-  }
-  return { moments, products, gaps, missing };
+export function backgroundPart(spec: BackgroundSpec, slab: Slab, steps: StepAxis, times: IndexRange): NormalSums {
+  const [, nLevel, nLat, nLon] = slab.shape;
+  return normalSums(slab.data, basisOf(spec, steps, times), coefficientCount(spec), nLevel * nLat * nLon);
 }
 
 /**
@@ -103,7 +91,7 @@ export function backgroundPart(spec: BackgroundSpec, slab: Slab, steps: StepAxis
  *
  * @param parts In the order of time.
  * @param rows  Rows that the parts' slabs cover.
- * @throws OptionError if the record as a whole is too short.
+ * @throws As backgroundTimes.
  */
 export function fitBackground(
   parts: readonly Readonly<Record<string, ArrayLike<number>>>[],
@@ -114,14 +102,6 @@ export function fitBackground(
   const m = coefficientCount(spec);
   const times = backgroundTimes(spec, steps);
   const nSteps = times[1] - times[0];
-  if (spec.kind === "annual-cycle") {
-    const distinct = new Set(Array.from(phases(steps, times), (phase) => phase.toFixed(6))).size;
-    if (distinct < m)
-      throw new DataError(
-        "OptionError",
-        `An annual cycle of ${spec.harmonics} harmonics needs ${m} different days of the year; this record has ${distinct}. Choose fewer harmonics, or the record's mean.`,
-      );
-  }
   const [first] = parts;
   if (first === undefined) throw new DataError("ShapeError", "A background needs at least one chunk of the record.");
   const moments = Float64Array.from(first.moments as ArrayLike<number>);
@@ -165,11 +145,16 @@ export function backgroundAt(
   for (let t = 0; t < nTime; t++) {
     for (let level = 0; level < nLevel; level++) {
       const into = (t * nLevel + level) * plane;
-      for (let i = 0; i < m; i++) {
-        const b = basis[t * m + i] as number;
+      const mean = level * whole + skipped;
+      out.set(coefficients.subarray(mean, mean + plane), into);
+      // Cosine and sine of a harmonic together: half the traffic.
+      for (let i = 1; i < m; i += 2) {
+        const cos = basis[t * m + i];
+        const sin = basis[t * m + i + 1];
         const from = (i * nLevel + level) * whole + skipped;
+        const beside = from + nLevel * whole;
         for (let c = 0; c < plane; c++)
-          out[into + c] = (out[into + c] as number) + b * (coefficients[from + c] as number);
+          out[into + c] = out[into + c] + cos * coefficients[from + c] + sin * coefficients[beside + c];
       }
     }
   }

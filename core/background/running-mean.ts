@@ -47,12 +47,39 @@ export function runningMeanHalo(spec: BackgroundSpec, steps: StepAxis): number {
 }
 
 /**
+ * Sums over aligned blocks of 1, 2, 4 … steps: entry l holds the blocks [j · 2^l, (j + 1) · 2^l) of the record that lie in
+ * what is loaded, from j = `first` on. Entry 0 is the slab itself.
+ */
+interface BlockSums {
+  readonly first: number;
+  readonly sums: Float64Array;
+}
+
+function blockSums(x: Float64Array, loaded: IndexRange, cells: number, longest: number): BlockSums[] {
+  const blocks: BlockSums[] = [{ first: loaded[0], sums: x }];
+  for (let size = 2; size <= longest; size *= 2) {
+    const below = blocks[blocks.length - 1];
+    const first = Math.ceil(loaded[0] / size);
+    const count = Math.max(0, Math.floor(loaded[1] / size) - first);
+    const sums = new Float64Array(count * cells);
+    for (let j = 0; j < count; j++) {
+      const a = (2 * (first + j) - below.first) * cells;
+      const b = a + cells;
+      for (let c = 0, into = j * cells; c < cells; c++, into++) sums[into] = below.sums[a + c] + below.sums[b + c];
+    }
+    blocks.push({ first, sums });
+  }
+  return blocks;
+}
+
+/**
  * Centred running mean.
  *
- * Each window is summed anew from its steps, so that the numbers do not depend on where a chunk begins. A window that misses
- * a value, or reaches beyond the record, has no mean: nothing is invented at the ends.
+ * A window is the sum of the fewest aligned blocks that make it up: 2 log₂ of its steps at most, and blocks follow from the
+ * record's own counting, so that the numbers do not depend on where a chunk begins. A window that misses a value, or reaches
+ * beyond the record, has no mean: nothing is invented at the ends.
  *
- * @param slab   The steps `loaded`.
+ * @param slab   The steps `loaded`. Not modified.
  * @param times  The steps wanted, within `loaded`.
  * @param spec   The running mean; its window is the largest odd number of steps within `days`.
  * @returns Shape (times, cells), NaN where the window is not whole.
@@ -70,18 +97,24 @@ export function runningMean(
   const out = new Float64Array(nTime * cells);
   const half = runningMeanHalo(spec, steps);
   const share = 1 / (2 * half + 1);
+  const blocks = blockSums(slab.data, loaded, cells, 2 * half + 1);
   for (let t = 0; t < nTime; t++) {
     const centre = times[0] + t;
-    const own = out.subarray(t * cells, (t + 1) * cells);
+    const into = t * cells;
     if (centre - half < loaded[0] || centre + half >= loaded[1]) {
-      own.fill(Number.NaN);
+      out.fill(Number.NaN, into, into + cells);
       continue;
     }
-    for (let s = centre - half; s <= centre + half; s++) {
-      const from = (s - loaded[0]) * cells;
-      for (let c = 0; c < cells; c++) own[c] = (own[c] as number) + (slab.data[from + c] as number);
+    const end = centre + half + 1;
+    for (let s = centre - half; s < end; ) {
+      let level = 0;
+      while (s % 2 ** (level + 1) === 0 && s + 2 ** (level + 1) <= end) level += 1;
+      const { first, sums } = blocks[level];
+      const from = (s / 2 ** level - first) * cells;
+      for (let c = 0; c < cells; c++) out[into + c] += sums[from + c];
+      s += 2 ** level;
     }
-    for (let c = 0; c < cells; c++) own[c] = (own[c] as number) * share;
+    for (let c = into; c < into + cells; c++) out[c] *= share;
   }
   return out;
 }

@@ -1,8 +1,14 @@
+import { reasonCode } from "../field/reasons.ts";
 import type { ChunkPart, Coordinate, Diagnostic, OptionValues, Outcome, ResultVariable, Series } from "./entry.ts";
+import { SINGLE_NOTE } from "./precision.ts";
+import { interferenceVariables } from "./waves/interference.ts";
+import { WAVE_OPTIONS } from "./waves/option-specs.ts";
+import { WAVE_OUTPUTS } from "./waves/output-specs.ts";
+import { reconstructionVariable } from "./waves/reconstruction.ts";
 import { joinedParts } from "./waves/series-join.ts";
 import { amplitudeVariables, incoherentVariables } from "./waves/wave-amplitudes.ts";
 import { planRows, waveChunk } from "./waves/wave-chunk.ts";
-import { interferenceVariables, reconstructionVariable, shareVariable } from "./waves/wave-extras.ts";
+import { shareVariable } from "./waves/wave-extras.ts";
 import { WaveFrame } from "./waves/wave-frame.ts";
 import { waveChoice } from "./waves/wave-options.ts";
 import { driftVariables, LEAST_SHARE, speedVariables } from "./waves/wave-speeds.ts";
@@ -13,8 +19,7 @@ const FORMULA =
   "<mo>,</mo><mspace width='1em'/><msub><mi>A</mi><mi>k</mi></msub><mo>=</mo><mn>2</mn><mo>|</mo><msub><mi>c</mi><mi>k</mi></msub><mo>|</mo>" +
   "<mo>,</mo><mspace width='1em'/><msub><mi>λ</mi><mi>k</mi></msub><mo>=</mo><mo>−</mo><mfrac><mrow><mi>arg</mi><msub><mi>c</mi><mi>k</mi></msub></mrow><mi>k</mi></mfrac></mrow>";
 
-const EACH = ["time", "level", "latitude or band", "wavenumber"];
-const WHOLE = ["level", "latitude or band", "wavenumber"];
+const MISSING = reasonCode("missing");
 
 function finish(parts: readonly ChunkPart[], series: Series, options: OptionValues): Outcome {
   const choice = waveChoice(series, options);
@@ -48,9 +53,19 @@ function finish(parts: readonly ChunkPart[], series: Series, options: OptionValu
     coordinates.push(made.coordinate);
   }
   if (variables.some(({ data, dims }) => dims.includes("time") && data instanceof Float32Array))
-    notes.push("Numbers of every row and step are kept to seven digits (float32), for there are over a million.");
-  const missing = variables[0]?.reasons?.some((code) => code !== 0) ?? false;
-  if (missing) notes.push("Rows that miss a value have no waves; they are marked missing.");
+    notes.push(SINGLE_NOTE);
+  if (variables[0]?.reasons?.includes(MISSING) ?? false)
+    notes.push("Rows that miss a value have no waves; they are marked missing.");
+  const usesBackground = choice.ofAnomaly || variables.some(({ name }) => name === "interference");
+  if (usesBackground && frame.edgeSteps > 0)
+    notes.push(
+      `${frame.edgeSteps} steps lie nearer to the record's ends than half the running mean's window: they have no background, nor what departs from it.`,
+    );
+  const asked = (options.waves as readonly [number, number])[1];
+  if (asked > choice.waves[1])
+    notes.push(
+      `Waves end at ${choice.waves[1]}, the shortest that ${frame.nLon} columns carry; ${asked} was asked for.`,
+    );
   return { coordinates, variables, notes };
 }
 
@@ -62,6 +77,7 @@ export const zonalWaves: Diagnostic = {
   formula: FORMULA,
   validity:
     "A full circle of evenly spaced longitudes without a missing value in the row. Speeds need times; they are ambiguous where a ridge moves over 0.8 of half its own wavelength from one step to the next. " +
+    "A wave of no amplitude has no ridge, and two steps have a speed without an error. " +
     `A drift is left out for a wave with under ${100 * LEAST_SHARE} % of the variance along the circle. The wave whose crests lie two columns apart has no speed.`,
   sources: [
     "Fourier series along a latitude circle: common practice",
@@ -69,216 +85,13 @@ export const zonalWaves: Diagnostic = {
     "Smith & Kushner 2012, Journal of Geophysical Research: linear interference",
   ],
   inputs: [{ name: "field", quantities: "any", about: "the field that is taken apart" }],
-  options: [
-    {
-      name: "band",
-      kind: "range",
-      title: "Band",
-      units: "degrees_north",
-      default: null,
-      min: -90,
-      max: 90,
-      about: "South and north edge; equal edges mean the nearest row; none means every row of the grid.",
-    },
-    {
-      name: "waves",
-      kind: "range",
-      title: "Waves",
-      default: [1, 6],
-      min: 1,
-      max: 1440,
-      integer: true,
-      about: "First and last zonal wavenumber; what the grid cannot carry is cut off.",
-    },
-    {
-      name: "of",
-      kind: "choice",
-      title: "Waves of",
-      default: "field",
-      choices: [
-        { value: "field", title: "the field" },
-        { value: "anomaly", title: "its departure from the background" },
-      ],
-      about: "Whether the field itself is taken apart or its departure from the recipe's background.",
-    },
-    {
-      name: "average",
-      kind: "choice",
-      title: "Mean over the band",
-      default: "coherent",
-      choices: [
-        { value: "coherent", title: "of the field, so that phases count" },
-        { value: "incoherent", title: "of the rows' amplitudes" },
-      ],
-      about: "Coherent: the band's rows are averaged first, by area. Incoherent: their amplitudes are.",
-    },
-    {
-      name: "amplitude_floor",
-      kind: "number",
-      title: "Amplitude floor",
-      default: 0.25,
-      min: 0,
-      max: 1,
-      about: "Steps whose amplitude is under this share of its mean are left out of a speed.",
-    },
-    {
-      name: "drift_days",
-      kind: "number",
-      title: "Drift over",
-      units: "days",
-      default: 0,
-      min: 0,
-      max: 365,
-      about: "Days up to each step from which its drift is told; 0 for no drift.",
-    },
-    {
-      name: "reconstruct",
-      kind: "list",
-      title: "Reconstruct from",
-      default: null,
-      min: 0,
-      max: 1440,
-      integer: true,
-      about: "Waves from which the field is put together again; 0 is the zonal mean.",
-    },
-    {
-      name: "point",
-      kind: "list",
-      title: "Shares at",
-      units: "degrees north, degrees east",
-      default: null,
-      min: -180,
-      max: 360,
-      about: "Latitude and longitude of a point; the share of each wave in the value there is written.",
-    },
-  ],
-  outputs: [
-    {
-      name: "amplitude",
-      title: "Amplitude",
-      units: "input",
-      dims: EACH,
-      about: "Half the difference from ridge to trough.",
-    },
-    {
-      name: "ridge_longitude",
-      title: "Ridge longitude",
-      units: "degrees_east",
-      dims: EACH,
-      about: "The first of the wave's ridges east of 0°; the others follow every 360°/k.",
-    },
-    {
-      name: "variance_share",
-      title: "Share of the variance",
-      units: "1",
-      dims: EACH,
-      about: "Of the variance along the circle; all waves together make 1.",
-    },
-    { name: "phase", title: "Phase", units: "degrees", dims: EACH, about: "Argument of the Fourier coefficient." },
-    {
-      name: "phase_speed",
-      title: "Phase speed",
-      units: "degrees_east day-1",
-      dims: WHOLE,
-      about: "Regression of the ridge's longitude on time, weighted by the squared amplitude.",
-    },
-    {
-      name: "phase_speed_error",
-      title: "Standard error of the phase speed",
-      units: "degrees_east day-1",
-      dims: WHOLE,
-      about: "From the scatter about the regression line.",
-    },
-    {
-      name: "phase_speed_ms",
-      title: "Phase speed in metres",
-      units: "m s-1",
-      dims: WHOLE,
-      about: "The same along the row's circle.",
-    },
-    {
-      name: "lag_one_speed",
-      title: "Lag-one phase speed",
-      units: "degrees_east day-1",
-      dims: WHOLE,
-      about: "From the mean turn of the coefficient in one step; needs even steps, no unwrapping.",
-    },
-    {
-      name: "stationarity_ratio",
-      title: "Stationarity ratio",
-      units: "1",
-      dims: WHOLE,
-      about: "1 stands still, towards 0 only travels.",
-    },
-    {
-      name: "drift",
-      title: "Drift",
-      units: "degrees_east day-1",
-      dims: EACH,
-      about: "Phase speed over the days up to each step.",
-      when: "drift_days is over 0",
-    },
-    {
-      name: "drift_error",
-      title: "Standard error of the drift",
-      units: "degrees_east day-1",
-      dims: EACH,
-      about: "From the scatter about its regression line.",
-      when: "drift_days is over 0",
-    },
-    {
-      name: "interference",
-      title: "Interference",
-      units: "input squared",
-      dims: EACH,
-      about: "Zonal covariance of the anomaly's wave with the background's; positive builds the standing wave up.",
-      when: "the recipe has a background",
-    },
-    {
-      name: "interference_phase",
-      title: "Phase difference",
-      units: "degrees",
-      dims: EACH,
-      about: "Anomaly's wave less the background's.",
-      when: "the recipe has a background",
-    },
-    {
-      name: "background_amplitude",
-      title: "Background's amplitude",
-      units: "input",
-      dims: EACH,
-      about: "Amplitude of the background's wave.",
-      when: "the recipe has a background",
-    },
-    {
-      name: "background_ridge_longitude",
-      title: "Background's ridge",
-      units: "degrees_east",
-      dims: EACH,
-      about: "Ridge longitude of the background's wave.",
-      when: "the recipe has a background",
-    },
-    {
-      name: "reconstruction",
-      title: "Reconstruction",
-      units: "input",
-      dims: ["time", "level", "latitude or band", "longitude"],
-      about: "The field of the chosen waves.",
-      when: "reconstruct names waves",
-    },
-    {
-      name: "share",
-      title: "Share at a point",
-      units: "input",
-      dims: ["time", "level", "wave_or_rest"],
-      about: "What each wave, the zonal mean (0) and all shorter waves (last) add to the value there.",
-      when: "point is given",
-    },
-  ],
+  options: WAVE_OPTIONS,
+  outputs: WAVE_OUTPUTS,
   plan(series, options) {
     const choice = waveChoice(series, options);
-    const rows = planRows(series, choice);
-    return { rows, halo: 0, usesBackground: series.background.kind !== "none" };
+    // An incoherent mean has no phases, so nothing of it can interfere.
+    const comparable = choice.band === null || choice.coherent || choice.ofAnomaly;
+    return { rows: planRows(choice), halo: 0, usesBackground: series.background.kind !== "none" && comparable };
   },
   chunk: (input, series, options) => waveChunk(input, series, waveChoice(series, options)),
   finish,

@@ -76,8 +76,9 @@ export function waveAmplitude(re: number, im: number, k: number, nLon: number): 
   return (k === 0 || isNyquist(k, nLon) ? 1 : 2) * Math.sqrt(re * re + im * im);
 }
 
-/** Ridge longitude −arg(c_k)/k in degrees east, in [0, 360/k). */
+/** Ridge longitude −arg(c_k)/k in degrees east, in [0, 360/k); NaN for a wave of nothing. */
 export function ridgeLongitude(re: number, im: number, k: number): number {
+  if (re === 0 && im === 0) return Number.NaN;
   const cycle = 360 / k;
   const ridge = -Math.atan2(im, re) / RADIANS_PER_DEGREE / k;
   return ridge < 0 ? (ridge + cycle < cycle ? ridge + cycle : 0) : ridge;

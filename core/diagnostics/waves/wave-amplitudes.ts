@@ -5,7 +5,6 @@ import { isNyquist, ridgeLongitude, waveAmplitude } from "./coefficients.ts";
 import type { WaveFrame } from "./wave-frame.ts";
 
 const EACH = ["time", "level", "row", "wavenumber"] as const;
-const MISSING = reasonCode("missing");
 const SMALL = reasonCode("small");
 
 /** Amplitude, ridge longitude, share of the variance and phase of each wave at each step. */
@@ -20,6 +19,7 @@ export function amplitudeVariables(frame: WaveFrame, c: Float64Array, variance: 
   const share = frame.array(size);
   const phase = frame.array(size);
   const reasons = new Uint8Array(size);
+  const phaseReasons = new Uint8Array(size);
   const shareReasons = new Uint8Array(size);
   for (let r = 0, at = 0; r < rows; r++) {
     const total = variance[r] as number;
@@ -31,18 +31,20 @@ export function amplitudeVariables(frame: WaveFrame, c: Float64Array, variance: 
       amplitude[at] = a;
       ridge[at] = ridgeLongitude(re, im, k);
       share[at] = (isNyquist(k, nLon) ? a * a : (a * a) / 2) / total;
-      phase[at] = Math.atan2(im, re) / RADIANS_PER_DEGREE;
-      if (Number.isNaN(a)) reasons[at] = MISSING;
-      // A row of one value (a pole) has no variance to share.
-      shareReasons[at] = Number.isNaN(a) ? MISSING : total > 0 ? 0 : SMALL;
+      phase[at] = a === 0 ? Number.NaN : Math.atan2(im, re) / RADIANS_PER_DEGREE;
+      const absent = Number.isNaN(a) ? frame.absence(r, choice.ofAnomaly) : 0;
+      reasons[at] = absent;
+      // A wave of nothing has no ridge, and a row of one value (a pole) no variance to share.
+      phaseReasons[at] = a === 0 ? SMALL : absent;
+      shareReasons[at] = total === 0 ? SMALL : absent;
       at += 1;
     }
   }
   return [
     frame.variable("amplitude", "Amplitude", units, EACH, amplitude, reasons),
-    frame.variable("ridge_longitude", "Ridge longitude", "degrees_east", EACH, ridge, reasons),
+    frame.variable("ridge_longitude", "Ridge longitude", "degrees_east", EACH, ridge, phaseReasons),
     frame.variable("variance_share", "Share of the variance along the circle", "1", EACH, share, shareReasons),
-    frame.variable("phase", "Phase, the argument of the coefficient", "degrees", EACH, phase, reasons),
+    frame.variable("phase", "Phase, the argument of the coefficient", "degrees", EACH, phase, phaseReasons),
   ];
 }
 
@@ -56,6 +58,7 @@ export function incoherentVariables(frame: WaveFrame, c: Float64Array, variance:
   const amplitude = frame.array(size);
   const share = frame.array(size);
   const reasons = new Uint8Array(size);
+  const shareReasons = new Uint8Array(size);
   for (let s = 0, at = 0; s < steps; s++) {
     for (const k of waves) {
       let a = 0;
@@ -71,12 +74,13 @@ export function incoherentVariables(frame: WaveFrame, c: Float64Array, variance:
       }
       amplitude[at] = a;
       share[at] = own / total;
-      if (Number.isNaN(a)) reasons[at] = MISSING;
+      reasons[at] = Number.isNaN(a) ? frame.absence(s, choice.ofAnomaly) : 0;
+      shareReasons[at] = total === 0 ? SMALL : reasons[at];
       at += 1;
     }
   }
   return [
     frame.variable("amplitude", "Mean amplitude of the band's rows", frame.series.units, EACH, amplitude, reasons),
-    frame.variable("variance_share", "Share of the variance along the circles", "1", EACH, share, reasons),
+    frame.variable("variance_share", "Share of the variance along the circles", "1", EACH, share, shareReasons),
   ];
 }

@@ -1,4 +1,3 @@
-import { nearestColumn, nearestRow } from "../../grid/rows.ts";
 import type { ChunkInput, ChunkPart, Series } from "../entry.ts";
 import { rowCoefficients } from "./coefficients.ts";
 import { bandWeights, type WaveChoice } from "./wave-options.ts";
@@ -23,11 +22,6 @@ function difference(x: Float64Array, y: Float64Array): Float64Array {
   return out;
 }
 
-/** Departure from [x] where no background is; the row's own values otherwise: what the shares of a point add up to. */
-function pointRow(x: Float64Array, background: Float64Array | undefined): Float64Array {
-  return background === undefined ? x : difference(x, background);
-}
-
 /** Coefficients, and what is made from whole rows, of the chunk's own steps. */
 export function waveChunk(input: ChunkInput, series: Series, choice: WaveChoice): ChunkPart {
   const { lat, lon } = series.grid;
@@ -44,7 +38,7 @@ export function waveChunk(input: ChunkInput, series: Series, choice: WaveChoice)
   const steps = size / (nRowsRead * nLon);
 
   // Rows that the results speak of. A plan with a point may read more rows than the band has.
-  const readFrom = planRows(series, choice)[0];
+  const readFrom = planRows(choice)[0];
   const pick = (array: Float64Array): Float64Array => {
     const bandRows = choice.rows[1] - choice.rows[0];
     if (bandRows === nRowsRead) return array;
@@ -70,15 +64,14 @@ export function waveChunk(input: ChunkInput, series: Series, choice: WaveChoice)
     if (!choice.ofAnomaly) part.anomaly = rowCoefficients(difference(x, clim), lon, choice.most).c;
   }
   if (choice.point !== null) {
-    const row = nearestRow(lat, choice.point[0]) - readFrom;
-    const column = nearestColumn(lon, choice.point[1]);
+    const row = choice.point.row - readFrom;
     const rows = new Float64Array(steps * nLon);
-    const values = pointRow(field, choice.ofAnomaly ? background : undefined);
+    const values = choice.ofAnomaly && background !== undefined ? difference(field, background) : field;
     const at = new Float64Array(steps);
     for (let s = 0; s < steps; s++) {
       const from = (s * nRowsRead + row) * nLon;
       rows.set(values.subarray(from, from + nLon), s * nLon);
-      at[s] = values[from + column] as number;
+      at[s] = values[from + choice.point.column] as number;
     }
     part.pointC = rowCoefficients(rows, lon, choice.waves[1]).c;
     part.pointValue = at;
@@ -87,8 +80,8 @@ export function waveChunk(input: ChunkInput, series: Series, choice: WaveChoice)
 }
 
 /** Rows to read: the band's, and the point's. */
-export function planRows(series: Series, choice: WaveChoice): readonly [number, number] {
+export function planRows(choice: WaveChoice): readonly [number, number] {
   if (choice.point === null) return choice.rows;
-  const row = nearestRow(series.grid.lat, choice.point[0]);
+  const { row } = choice.point;
   return [Math.min(row, choice.rows[0]), Math.max(row + 1, choice.rows[1])];
 }

@@ -1,8 +1,17 @@
+import { runningMeanHalo } from "../../background/running-mean.ts";
+import { reasonCode } from "../../field/reasons.ts";
 import type { Coordinate, ResultVariable, Series } from "../entry.ts";
+import { resultArray } from "../precision.ts";
 import { bandWeights, type WaveChoice } from "./wave-options.ts";
 
-/** Over this many numbers a variable of every row and step is kept as float32: seven digits are more than any file's packing holds. */
-const MOST_DOUBLE = 1_000_000;
+const MISSING = reasonCode("missing");
+const EDGE = reasonCode("edge");
+
+/** A plain loop: a function called for each of millions of codes takes as long as the diagnostic. */
+function hasReason(reasons: Uint8Array): boolean {
+  for (let i = 0; i < reasons.length; i++) if (reasons[i] !== 0) return true;
+  return false;
+}
 
 /** The axes on which the results of one run stand, and how variables on them are made. */
 export class WaveFrame {
@@ -15,6 +24,8 @@ export class WaveFrame {
   readonly waves: readonly number[];
   readonly rowDim: "latitude" | "band";
   readonly nLon: number;
+  /** Steps at either end of the record where a running mean has no value. */
+  readonly #edge: number;
 
   constructor(series: Series, choice: WaveChoice) {
     this.series = series;
@@ -25,6 +36,29 @@ export class WaveFrame {
     this.waves = Array.from({ length: choice.waves[1] - choice.waves[0] + 1 }, (_, i) => choice.waves[0] + i);
     this.rowDim = choice.band === null ? "latitude" : "band";
     this.nLon = series.grid.lon.length;
+    this.#edge = runningMeanHalo(series.background, series.steps);
+  }
+
+  /** Steps of the result at which the background reaches beyond the record. */
+  get edgeSteps(): number {
+    let count = 0;
+    for (let t = 0; t < this.nTime; t++) count += this.#isEdge(t) ? 1 : 0;
+    return count;
+  }
+
+  #isEdge(t: number): boolean {
+    const step = this.series.times[0] + t;
+    return step < this.#edge || step + this.#edge >= this.series.steps.values.length;
+  }
+
+  /**
+   * Reason code of a missing number.
+   *
+   * @param row              Counted over time, level and row.
+   * @param needsBackground  Whether it was made from the background too.
+   */
+  absence(row: number, needsBackground: boolean, rowsPerStep = this.nLevel * this.nRow): number {
+    return needsBackground && this.#isEdge(Math.floor(row / rowsPerStep)) ? EDGE : MISSING;
   }
 
   /** `days` of the steps in the result. */
@@ -92,7 +126,7 @@ export class WaveFrame {
   }
 
   array(size: number): Float64Array | Float32Array {
-    return size > MOST_DOUBLE ? new Float32Array(size) : new Float64Array(size);
+    return resultArray(size);
   }
 
   variable(
@@ -103,7 +137,7 @@ export class WaveFrame {
     data: Float64Array | Float32Array,
     reasons?: Uint8Array,
   ): ResultVariable {
-    const plain = reasons === undefined || reasons.every((code) => code === 0);
+    const plain = reasons === undefined || !hasReason(reasons);
     return { name, title, units, dims: this.dims(dims), shape: this.shape(dims), data, ...(plain ? {} : { reasons }) };
   }
 

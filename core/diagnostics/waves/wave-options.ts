@@ -1,7 +1,7 @@
 import { DataError } from "../../errors.ts";
 import type { IndexRange } from "../../field/axes.ts";
 import { requireCircle } from "../../grid/circle.ts";
-import { rowsOfBand, rowWeights } from "../../grid/rows.ts";
+import { nearestColumn, rowsOfBand, rowWeights } from "../../grid/rows.ts";
 import type { OptionValues, Series } from "../entry.ts";
 
 /** The options of zonal-waves, typed, with what follows from them. */
@@ -22,7 +22,13 @@ export interface WaveChoice {
   readonly floor: number;
   readonly driftDays: number;
   readonly reconstruct: readonly number[] | null;
-  readonly point: readonly [number, number] | null;
+  readonly point: PointChoice | null;
+}
+
+/** The grid point at which shares are told. */
+export interface PointChoice {
+  readonly row: number;
+  readonly column: number;
 }
 
 /** @throws OptionError or GridError in words where the grid or the series cannot serve the options. */
@@ -38,9 +44,6 @@ export function waveChoice(series: Series, options: OptionValues): WaveChoice {
     );
   const waves = [first, Math.min(last, nyquist)] as const;
   const band = options.band as readonly [number, number] | null;
-  const point = options.point as readonly number[] | null;
-  if (point !== null && (point.length !== 2 || Math.abs(point[0] as number) > 90))
-    throw new DataError("OptionError", `point: [${point}] is not a latitude and a longitude in degrees.`);
   const ofAnomaly = options.of === "anomaly";
   if (ofAnomaly && series.background.kind === "none")
     throw new DataError(
@@ -48,6 +51,8 @@ export function waveChoice(series: Series, options: OptionValues): WaveChoice {
       `of: "anomaly" needs a background to depart from. State one in the recipe, or use "field".`,
     );
   const reconstruct = options.reconstruct as readonly number[] | null;
+  if (reconstruct?.length === 0)
+    throw new DataError("OptionError", "reconstruct: the list names no wave. List some, or leave the option out.");
   const beyond = reconstruct?.find((k) => k > nyquist);
   if (beyond !== undefined)
     throw new DataError(
@@ -74,8 +79,16 @@ export function waveChoice(series: Series, options: OptionValues): WaveChoice {
     floor: options.amplitude_floor as number,
     driftDays: options.drift_days as number,
     reconstruct,
-    point: point === null ? null : [point[0] as number, point[1] as number],
+    point: pointChoice(series, options.point as readonly number[] | null),
   };
+}
+
+function pointChoice({ grid }: Series, point: readonly number[] | null): PointChoice | null {
+  if (point === null) return null;
+  const [latitude = Number.NaN, longitude = Number.NaN] = point;
+  if (point.length !== 2 || !(Math.abs(latitude) <= 90))
+    throw new DataError("OptionError", `point: [${point}] is not a latitude and a longitude in degrees.`);
+  return { row: rowsOfBand(grid.lat, [latitude, latitude])[0], column: nearestColumn(grid.lon, longitude) };
 }
 
 /** The row itself where a single latitude was asked for, else the band's centre. */

@@ -2,7 +2,15 @@ import { EARTH_RADIUS, RADIANS_PER_DEGREE, SECONDS_PER_DAY } from "../../constan
 import { reasonCode } from "../../field/reasons.ts";
 import type { ResultVariable } from "../entry.ts";
 import { isNyquist } from "./coefficients.ts";
-import { type Drift, lagOneDrift, phaseDrift, stationarityRatio } from "./drift.ts";
+import {
+  type Drift,
+  errorReason,
+  fillWavePath,
+  lagOneDrift,
+  phaseDrift,
+  stationarityRatio,
+  type WavePath,
+} from "./drift.ts";
 import type { WaveFrame } from "./wave-frame.ts";
 
 const WHOLE = ["level", "row", "wavenumber"] as const;
@@ -10,7 +18,6 @@ const EACH = ["time", "level", "row", "wavenumber"] as const;
 const NO_TIME = reasonCode("no_time");
 const AMBIGUOUS = reasonCode("ambiguous");
 const SMALL = reasonCode("small");
-const MISSING = reasonCode("missing");
 const NOTHING: Drift = { speed: Number.NaN, error: Number.NaN, reason: NO_TIME };
 /** Days; times in hours stored as float64 days round off far below it. */
 const STEP_TOLERANCE = 1e-6;
@@ -44,6 +51,10 @@ function gathered(
   }
 }
 
+function emptyPath(nTime: number): WavePath {
+  return { size: new Float64Array(nTime), ridge: new Float64Array(nTime) };
+}
+
 /** Speeds over all steps, and how far each wave stands still. `notes` takes a sentence where something is left out. */
 export function speedVariables(frame: WaveFrame, c: Float64Array, notes: string[]): ResultVariable[] {
   const { waves, nLevel, nRow, nTime, choice, series, nLon } = frame;
@@ -59,6 +70,7 @@ export function speedVariables(frame: WaveFrame, c: Float64Array, notes: string[
     Float64Array,
   ];
   const speedReasons = new Uint8Array(size);
+  const errorReasons = new Uint8Array(size);
   const lagReasons = new Uint8Array(size);
   const ratioReasons = new Uint8Array(size);
   const days = frame.days;
@@ -67,6 +79,7 @@ export function speedVariables(frame: WaveFrame, c: Float64Array, notes: string[
     notes.push(`The record steps along "${series.steps.name}", which is no time: there are no phase speeds.`);
   else if (step === null && nTime > 1) notes.push("The steps are not evenly spaced: there is no lag-one speed.");
   const place = new Float64Array(2 * kept * nTime);
+  const path = emptyPath(nTime);
   for (let p = 0, at = 0; p < nLevel * nRow; p++) {
     gathered(c, p, stride, kept, nTime, place);
     const metres =
@@ -75,16 +88,19 @@ export function speedVariables(frame: WaveFrame, c: Float64Array, notes: string[
       const shift = 2 * k * nTime;
       // The Nyquist wave has no phase: its crests can only stand on the columns or between them.
       const usable = isTime && !isNyquist(k, nLon);
-      const drift = usable ? phaseDrift(place, 2, shift, days, 0, nTime, k, choice.floor) : NOTHING;
-      const lagOne = usable && step !== null ? lagOneDrift(place, 2, shift, 0, nTime, k, step) : NOTHING;
+      if (usable) fillWavePath(path, place, shift, nTime, k);
+      const drift = usable ? phaseDrift(path, days, 0, nTime, k, choice.floor) : NOTHING;
+      const lagOne = usable && step !== null ? lagOneDrift(place, shift, nTime, k, step) : NOTHING;
+      const still = stationarityRatio(place, shift, nTime);
       speed[at] = drift.speed;
       error[at] = drift.error;
       speedMs[at] = (drift.speed * metres) / SECONDS_PER_DAY;
       lag[at] = lagOne.speed;
-      ratio[at] = stationarityRatio(place, 2, shift, 0, nTime);
+      ratio[at] = still.ratio;
       speedReasons[at] = drift.reason;
+      errorReasons[at] = errorReason(drift);
       lagReasons[at] = lagOne.reason;
-      ratioReasons[at] = Number.isNaN(ratio[at] as number) ? MISSING : 0;
+      ratioReasons[at] = still.reason;
       at += 1;
     }
   }
@@ -96,7 +112,7 @@ export function speedVariables(frame: WaveFrame, c: Float64Array, notes: string[
       "degrees_east day-1",
       WHOLE,
       error,
-      speedReasons,
+      errorReasons,
     ),
     frame.variable(
       "phase_speed_ms",
@@ -120,39 +136,45 @@ export function speedVariables(frame: WaveFrame, c: Float64Array, notes: string[
 
 /** Drift at each step from the days up to it, as one sees it on the day. */
 export function driftVariables(frame: WaveFrame, c: Float64Array, variance: Float64Array): ResultVariable[] {
-  const { waves, nLevel, nRow, nTime, choice, series, nLon } = frame;
+  const { waves, nLevel, nRow, nTime, choice, series, nLon, days } = frame;
   const isTime = series.steps.kind === "time";
   const kept = choice.most + 1;
   const places = nLevel * nRow;
-  const stride = 2 * places * kept;
   const size = nTime * places * waves.length;
   const speed = frame.array(size);
   const error = frame.array(size);
   const reasons = new Uint8Array(size);
-  const days = frame.days;
-  let from = 0;
-  for (let t = 0, at = 0; t < nTime; t++) {
-    while ((days[t] as number) - (days[from] as number) > choice.driftDays + STEP_TOLERANCE) from += 1;
-    for (let p = 0; p < places; p++) {
-      let total = 0;
-      for (let s = from; s <= t; s++) total += variance[s * places + p] as number;
-      for (const k of waves) {
-        const shift = 2 * (p * kept + k);
-        let drift =
-          isTime && !isNyquist(k, nLon) ? phaseDrift(c, stride, shift, days, from, t + 1, k, choice.floor) : NOTHING;
+  const errorReasons = new Uint8Array(size);
+  const firsts = new Int32Array(nTime);
+  for (let t = 0, from = 0; t < nTime; t++) {
+    while (days[t] - days[from] > choice.driftDays + STEP_TOLERANCE) from += 1;
+    firsts[t] = from;
+  }
+  const place = new Float64Array(2 * kept * nTime);
+  const path = emptyPath(nTime);
+  const totals = new Float64Array(nTime);
+  for (let p = 0; p < places; p++) {
+    gathered(c, p, 2 * places * kept, kept, nTime, place);
+    for (let t = 0; t < nTime; t++) {
+      totals[t] = 0;
+      for (let s = firsts[t]; s <= t; s++) totals[t] += variance[s * places + p];
+    }
+    waves.forEach((k, w) => {
+      const usable = isTime && !isNyquist(k, nLon);
+      if (usable) fillWavePath(path, place, 2 * k * nTime, nTime, k);
+      for (let t = 0; t < nTime; t++) {
+        let drift = usable ? phaseDrift(path, days, firsts[t], t + 1, k, choice.floor) : NOTHING;
         let own = 0;
-        for (let s = from; s <= t; s++) {
-          const i = s * stride + shift;
-          own += 2 * ((c[i] as number) ** 2 + (c[i + 1] as number) ** 2);
-        }
+        for (let s = firsts[t]; s <= t; s++) own += 2 * path.size[s] * path.size[s];
         const valued = drift.reason === 0 || drift.reason === AMBIGUOUS;
-        if (valued && own < LEAST_SHARE * total) drift = { speed: Number.NaN, error: Number.NaN, reason: SMALL };
+        if (valued && own < LEAST_SHARE * totals[t]) drift = { speed: Number.NaN, error: Number.NaN, reason: SMALL };
+        const at = (t * places + p) * waves.length + w;
         speed[at] = drift.speed;
         error[at] = drift.error;
         reasons[at] = drift.reason;
-        at += 1;
+        errorReasons[at] = errorReason(drift);
       }
-    }
+    });
   }
   return [
     frame.variable(
@@ -163,6 +185,6 @@ export function driftVariables(frame: WaveFrame, c: Float64Array, variance: Floa
       speed,
       reasons,
     ),
-    frame.variable("drift_error", "Standard error of the drift", "degrees_east day-1", EACH, error, reasons),
+    frame.variable("drift_error", "Standard error of the drift", "degrees_east day-1", EACH, error, errorReasons),
   ];
 }

@@ -7,8 +7,9 @@ import {
   fitBackground,
   needsPass,
 } from "../../../core/background/background.ts";
-import { runningMeanHalo } from "../../../core/background/running-mean.ts";
+import { runningMean, runningMeanHalo } from "../../../core/background/running-mean.ts";
 import type { BackgroundSpec } from "../../../core/background/spec.ts";
+import type { StepAxis } from "../../../core/field/axes.ts";
 import type { Slab } from "../../../core/field/slab.ts";
 import { dailySteps } from "../diagnostics/run-diagnostic.ts";
 
@@ -108,4 +109,86 @@ test("a background of nothing is refused", () => {
   expect(() => fitBackground([], { steps, background: { kind: "record-mean" }, grid }, [0, 2])).toThrow(
     "at least one chunk",
   );
+});
+
+test("a mean over part of a record that is no time is told by its numbers", () => {
+  const months: StepAxis = { ...steps, kind: "record", name: "month", values: Float64Array.of(1, 4, 7, 10) };
+  const spec: BackgroundSpec = { kind: "period-mean", from: "4", to: "7" };
+  expect(backgroundTimes(spec, months)).toEqual([1, 3]);
+  expect(() => backgroundTimes({ ...spec, from: "2001-01-01" }, months)).toThrow("no times");
+  expect(() => backgroundTimes({ kind: "annual-cycle", harmonics: 1 }, months)).toThrow('along "month"');
+  expect(() => runningMeanHalo({ kind: "running-mean", days: 3 }, months)).toThrow('along "month"');
+});
+
+test("a cycle that the steps alone rule out is refused before anything is read", () => {
+  const cycle: BackgroundSpec = { kind: "annual-cycle", harmonics: 4 };
+  const first = (n: number): StepAxis => ({ ...steps, values: steps.values.slice(0, n) });
+  expect(() => backgroundTimes(cycle, first(8))).toThrow("needs 9 different days of the year; this record has 8");
+  expect(() => backgroundTimes(cycle, first(40))).toThrow("too little of the year to tell its 4 harmonics apart");
+  expect(backgroundTimes(cycle, first(90))).toEqual([0, 90]);
+  // The same two days of many years are two days
+  const yearly = {
+    ...steps,
+    calendar: "noleap",
+    values: Float64Array.from({ length: 20 }, (_, i) => 365 * (i >> 1) + 30 * (i & 1)),
+  } as const;
+  expect(() => backgroundTimes({ kind: "annual-cycle", harmonics: 1 }, yearly)).toThrow("this record has 2");
+});
+
+test("moments with gaps are the plain sums over what is there (the definition), for any number of steps", () => {
+  const spec: BackgroundSpec = { kind: "annual-cycle", harmonics: 1 };
+  for (const n of [1, 3, 4, 5, 11]) {
+    const one = slab(0, n);
+    const x = one.data.map((value, i) => ((i * 7) % 5 === 2 ? Number.NaN : value));
+    const kept = x.slice();
+    const part = backgroundPart(spec, { ...one, data: x }, steps, [0, n]);
+    expect(x, "the input is not modified").toEqual(kept);
+    for (let i = 0; i < 3; i++)
+      for (let c = 0; c < 6; c++) {
+        let sum = 0;
+        for (let t = 0; t < n; t++) {
+          const angle = (2 * Math.PI * t) / 365;
+          const basis = [1, Math.cos(angle), Math.sin(angle)][i] as number;
+          if (!Number.isNaN(x[6 * t + c])) sum += basis * (x[6 * t + c] as number);
+        }
+        // n terms under 120, and a phase that is rounded at 11000 days: 2π · 2⁻⁵³ · 11000/365 of an angle
+        expect(Math.abs((part.moments[6 * i + c] as number) - sum)).toBeLessThan(n * 120 * 2 ** -46);
+      }
+    for (let c = 0; c < 6; c++) {
+      const lost = Array.from({ length: n }, (_, t) => x[6 * t + c]).filter(Number.isNaN).length;
+      expect(part.missing[c]).toBe(lost);
+    }
+  }
+});
+
+test("a running mean is the mean of its window (the definition) to the same bits however the record is cut", () => {
+  const n = 60;
+  const whole = slab(0, n);
+  whole.data[6 * 30 + 2] = Number.NaN;
+  const axis = { ...steps, values: steps.values.slice(0, n) };
+  for (const days of [3, 7, 15, 31, 59]) {
+    const half = (days - 1) / 2;
+    const spec: BackgroundSpec = { kind: "running-mean", days };
+    const all = runningMean(whole, axis, [0, n], [0, n], spec);
+    for (let t = 0; t < n; t++)
+      for (let c = 0; c < 6; c++) {
+        const got = all[6 * t + c] as number;
+        let sum = 0;
+        for (let s = t - half; s <= t + half; s++) sum += whole.data[6 * s + c] ?? Number.NaN;
+        // Sums of `days` terms under 120, in two orders
+        if (Number.isNaN(sum)) expect(got, `${days} days, step ${t}, cell ${c}`).toBeNaN();
+        else
+          expect(Math.abs(got - sum / days), `${days} days, step ${t}, cell ${c}`).toBeLessThan(days * 120 * 2 ** -52);
+      }
+    for (const [from, to] of [
+      [0, 1],
+      [13, 29],
+      [29, 60],
+    ] as const) {
+      const loaded = [Math.max(0, from - half), Math.min(n, to + half)] as const;
+      const piece = { ...whole, data: whole.data.slice(6 * loaded[0], 6 * loaded[1]) };
+      const part = runningMean({ ...piece, shape: [loaded[1] - loaded[0], 1, 2, 3] }, axis, loaded, [from, to], spec);
+      expect([...part], `${days} days, steps ${from} to ${to}`).toEqual([...all.slice(6 * from, 6 * to)]);
+    }
+  }
 });

@@ -56,6 +56,73 @@ test("harmonics of the year are numpy's least squares, whole and with gaps", () 
   expectClose(variable(gappy, "amplitude").data[3], Math.hypot(reference.gappy[3], reference.gappy[4]), LIMIT);
 });
 
+test("the cycle is written in the middles of equal parts of the year", () => {
+  const out = runOn(climatology, year(), { mean: "annual-cycle", harmonics: 4 });
+  const cycle = variable(out, "cycle");
+  expect(cycle.dims).toEqual(["part_of_year", "latitude", "longitude"]);
+  expect(cycle.shape).toEqual([12, 1, 2]);
+  const parts = out.coordinates.find(({ name }) => name === "part_of_year")?.values ?? [];
+  for (let p = 0; p < 12; p++) {
+    expectClose(cycle.data[2 * p], reference.cycle[p], LIMIT);
+    expectClose(parts[p], (p + 0.5) / 12, 2 ** -52);
+  }
+  const gappy = variable(runOn(climatology, year(), { mean: "annual-cycle", harmonics: 2, cycle_points: 5 }), "cycle");
+  for (let p = 0; p < 5; p++) expectClose(gappy.data[2 * p + 1], reference.cycle_gappy[p], LIMIT);
+  const none = runOn(climatology, year(), { mean: "annual-cycle", cycle_points: 0 });
+  expect(none.variables.map(({ name }) => name)).toEqual(["mean", "count", "amplitude", "peak"]);
+  expect(none.coordinates.map(({ name }) => name)).not.toContain("part_of_year");
+});
+
+test("a season's record says for which part of the year its cycle holds; one too short to tell is refused", () => {
+  const season = (days: number): Cube => ({
+    ...year(),
+    values: year().values.slice(0, 2 * days),
+    steps: { ...year().steps, values: year().steps.values.slice(0, days) },
+  });
+  expect(runOn(climatology, year(), { mean: "annual-cycle" }).notes).toEqual([]);
+  // 120 days leave out (365 − 119)/365 of the year
+  const some = runOn(climatology, season(120), { mean: "annual-cycle", harmonics: 2 });
+  expect(some.notes.join()).toContain("leaves out 67 % of the year");
+  // On 40 days the nine basis functions are alike to within the rounding of their sums: no pivot over 1e-10
+  expect(() => runOn(climatology, season(40), { mean: "annual-cycle", harmonics: 4 })).toThrow(
+    "too little of the year",
+  );
+});
+
+test("a cell without values is missing, one with too few is too short", () => {
+  const cube = year();
+  const blank = { ...cube, values: cube.values.map((x, i) => (i % 2 === 0 || i < 12 ? x : Number.NaN)) };
+  const empty = { ...cube, values: cube.values.map((x, i) => (i % 2 === 0 ? x : Number.NaN)) };
+  for (const [gaps, why] of [
+    [blank, "short"],
+    [empty, "missing"],
+  ] as const) {
+    const out = runOn(climatology, gaps, { mean: "annual-cycle", harmonics: 4, cycle_points: 3 });
+    for (const name of ["mean", "amplitude", "peak", "cycle"]) {
+      const one = variable(out, name);
+      expect(Array.from(one.reasons ?? []), name).toEqual(
+        Array.from(one.data, (_, i) => (i % 2 === 0 ? 0 : reasonCode(why))),
+      );
+    }
+  }
+});
+
+test("a running mean of over a million numbers is kept as float32, and says so", () => {
+  const [nTime, nLat, nLon] = [200, 71, 72];
+  const lat = Float64Array.from({ length: nLat }, (_, j) => j - 35);
+  const lon = Float64Array.from({ length: nLon }, (_, i) => 5 * i);
+  const values = Float64Array.from({ length: nTime * nLat * nLon }, (_, i) => (i * 37) % 101);
+  const cube: Cube = { values, lat, lon, steps: dailySteps(nTime), levels: null };
+  const out = runOn(climatology, cube, { mean: "running-mean", days: 3 }, { kind: "none" }, [90]);
+  const { data } = variable(out, "mean");
+  expect(data).toBeInstanceOf(Float32Array);
+  expect(out.notes.join()).toContain("float32");
+  const cells = nLat * nLon;
+  // Whole numbers under 101: their mean, rounded once to 24 bits
+  for (const i of [cells, 91 * cells + 17, 198 * cells + cells - 1])
+    expectClose(data[i], (values[i - cells] + values[i] + values[i + cells]) / 3, 101 * 2 ** -24);
+});
+
 test("a running mean is numpy's convolution; the ends are left out, not invented", () => {
   const cube = year();
   const out = runOn(climatology, cube, { mean: "running-mean", days: 31 }, { kind: "none" }, [3, 40, 300]);
@@ -69,6 +136,7 @@ test("a running mean is numpy's convolution; the ends are left out, not invented
   expect(mean.reasons?.[2 * 20 + 1]).toBe(reasonCode("missing"));
   const whole = runOn(climatology, cube, { mean: "running-mean", days: 31 });
   expect(numbers(variable(whole, "mean"))).toEqual(numbers(mean));
+  expect(out.notes.join()).toContain("over 31 steps");
   expect(out.notes.join()).toContain("30 steps");
 });
 

@@ -3,55 +3,12 @@ import fc from "fast-check";
 import { describe, expect, test } from "vitest";
 import { zonalWaves } from "../../../core/diagnostics/zonal-waves.ts";
 import { reasonCode } from "../../../core/field/reasons.ts";
+import { orderedColumns } from "../../../core/formats/cf/horizontal.ts";
 import { type Cube, dailySteps, numbers, runOn, variable } from "./run-diagnostic.ts";
+import { expectAll, HEIGHT_ROUNDING, RAD, referenceCube, rowCube } from "./wave-cubes.ts";
 
-// By numpy from the definitions: reference/make_reference.py
+// By numpy and scipy from the definitions: reference/make_reference.py
 const reference = JSON.parse(readFileSync(new URL("./reference/waves.json", import.meta.url), "utf8"));
-
-const RAD = Math.PI / 180;
-/** A sum of N products of heights of 5500, each rounded to 2⁻⁵³: the error of a coefficient, twice over for A = 2|c|, and once for each side. */
-const HEIGHT_ROUNDING = 8 * 48 * 5600 * 2 ** -53;
-
-/** The reference script's record. */
-function referenceCube(): Cube {
-  const [nTime, nLat, nLon] = [40, 9, 48];
-  const lat = Float64Array.from({ length: nLat }, (_, j) => 40 + 2.5 * j);
-  const lon = Float64Array.from({ length: nLon }, (_, i) => -180 + 7.5 * i);
-  const values = new Float64Array(nTime * nLat * nLon);
-  let at = 0;
-  for (let t = 0; t < nTime; t++)
-    for (let j = 0; j < nLat; j++)
-      for (let i = 0; i < nLon; i++) {
-        const l = (lon[i] as number) * RAD;
-        const smooth =
-          5500 -
-          20 * j +
-          90 * Math.cos(2 * (l - (30 + 4 * t) * RAD)) +
-          (60 + 2 * j) * Math.cos(3 * (l - (10 - 2.5 * t + j) * RAD)) +
-          40 * Math.cos(l - 1);
-        values[at++] = smooth + (((t * 13 + j * 7 + i * 29) % 23) - 11) + (((t * t * 3 + i * i * 5 + j) % 17) - 8);
-      }
-  return { values, lat, lon, steps: dailySteps(nTime), levels: Float64Array.of(500) };
-}
-
-/** One row of one step. */
-function rowCube(x: (lon: number) => number, lon: Float64Array): Cube {
-  return { values: lon.map(x), lat: Float64Array.of(55), lon, steps: dailySteps(1), levels: Float64Array.of(500) };
-}
-
-function expectAll(
-  got: ArrayLike<number>,
-  want: readonly number[],
-  limit: number | ((i: number) => number),
-  words: string,
-): void {
-  expect(got.length, words).toBe(want.length);
-  for (let i = 0; i < want.length; i++) {
-    const bound = typeof limit === "number" ? limit : limit(i);
-    const off = Math.abs((got[i] as number) - (want[i] as number));
-    expect(off <= bound, `${words}, number ${i}: ${got[i]}, should be ${want[i]}, limit ${bound}`).toBe(true);
-  }
-}
 
 describe("analytic waves", () => {
   // x = 5500 + 120 cos 2(λ − 30°): amplitude 120, ridges at 30° and 210° (the definition itself)
@@ -59,6 +16,14 @@ describe("analytic waves", () => {
     ["144 columns from 0°", Float64Array.from({ length: 144 }, (_, i) => 2.5 * i)],
     ["240 columns from 0°", Float64Array.from({ length: 240 }, (_, i) => 1.5 * i)],
     ["360 columns from 0.5°", Float64Array.from({ length: 360 }, (_, i) => 0.5 + i)],
+    ["240 columns from −180°", Float64Array.from({ length: 240 }, (_, i) => -180 + 1.5 * i)],
+    [
+      "361 columns with the repeated meridian, as the grid keeps them",
+      orderedColumns(
+        Float64Array.from({ length: 361 }, (_, i) => i),
+        "z",
+      ).values,
+    ],
     ["480 columns from −180°", Float64Array.from({ length: 480 }, (_, i) => -180 + 0.75 * i)],
     ["97 columns from 10°", Float64Array.from({ length: 97 }, (_, i) => 10 + (360 / 97) * i)],
   ])("are found on %s", (_words, lon) => {
@@ -125,6 +90,37 @@ describe("against numpy", () => {
     );
     expect(incoherent.variables.map(({ name }) => name)).toEqual(["amplitude", "variance_share"]);
     expect(incoherent.notes.join()).toContain("incoherent");
+  });
+
+  test("random rows, all waves, by scipy.fft", () => {
+    const { rows, first, amplitude, ridge, share } = reference.random;
+    const nLon = rows[0].length as number;
+    const out = runOn(
+      zonalWaves,
+      {
+        values: Float64Array.from(rows.flat() as number[]),
+        lat: Float64Array.from(rows, (_: unknown, j: number) => 10 * j),
+        lon: Float64Array.from({ length: nLon }, (_, i) => first + (360 / nLon) * i),
+        steps: dailySteps(1),
+        levels: null,
+      },
+      { waves: [1, nLon / 2] },
+    );
+    // Values under 5 in size: a sum of 60 products rounded in either library, A = 2|c|
+    const limit = 8 * 60 * 5 * 2 ** -53;
+    const amplitudes = amplitude.flat() as number[];
+    expectAll(variable(out, "amplitude").data, amplitudes, limit, "amplitude");
+    expectAll(variable(out, "variance_share").data, share.flat(), 2 * limit, "share");
+    const ridges = (ridge.flat() as number[]).map((r, i) => ((i % 30) + 1 === 30 ? Number.NaN : r));
+    const got = numbers(variable(out, "ridge_longitude"));
+    ridges.forEach((want, i) => {
+      if (Number.isNaN(want)) return; // the Nyquist wave: its sign alone is known
+      const k = (i % 30) + 1;
+      const bound = limit / (amplitudes[i] as number) / k / RAD + 360 * 2 ** -52;
+      const turn = (got[i] as number) - want;
+      const off = Math.abs(turn - (360 / k) * Math.round((turn * k) / 360));
+      expect(off <= bound, `ridge ${i}: ${got[i]}, should be ${want}, limit ${bound}`).toBe(true);
+    });
   });
 
   test("rows of the whole grid, and a band of equal edges is the nearest row", () => {
@@ -277,155 +273,6 @@ test("the shares at a point are A cos k(λ₀ − λ_k) and add up to the value 
         ((cube.values[row * 48 + column] as number) - mean),
     ),
   ).toBeLessThan(2 * HEIGHT_ROUNDING);
-});
-
-describe("speeds", () => {
-  const lon = Float64Array.from({ length: 36 }, (_, i) => 10 * i);
-  const moving = (k: number, perDay: number, days: Float64Array): Cube => ({
-    values: Float64Array.from({ length: days.length * 36 }, (_, i) =>
-      Math.cos(k * ((lon[i % 36] as number) - perDay * (days[Math.floor(i / 36)] as number)) * RAD),
-    ),
-    lat: Float64Array.of(60),
-    lon,
-    steps: { ...dailySteps(0), values: days },
-    levels: null,
-  });
-
-  test("of a wave that moves evenly, east and west, also over uneven steps", () => {
-    const uneven = Float64Array.of(0, 1, 2, 4, 4.5, 7, 8, 9);
-    for (const perDay of [7, -11]) {
-      const out = runOn(zonalWaves, moving(3, perDay, uneven), { waves: [3, 3] });
-      expect(Math.abs((variable(out, "phase_speed").data[0] as number) - perDay)).toBeLessThan(1e-10);
-      expect(variable(out, "phase_speed").dims).toEqual(["latitude", "wavenumber"]);
-      expect(variable(out, "lag_one_speed").data[0]).toBeNaN();
-      expect(out.notes.join()).toContain("not evenly spaced");
-      const even = runOn(
-        zonalWaves,
-        moving(
-          3,
-          perDay,
-          Float64Array.from({ length: 12 }, (_, i) => i / 2),
-        ),
-        { waves: [3, 3] },
-      );
-      expect(Math.abs((variable(even, "lag_one_speed").data[0] as number) - perDay)).toBeLessThan(1e-10);
-      expect(variable(even, "phase_speed_error").data[0] as number).toBeLessThan(1e-6);
-    }
-  });
-
-  test("a step of over 0.8 · 180°/k is ambiguous, and the number stands", () => {
-    const days = Float64Array.from({ length: 6 }, (_, i) => i);
-    const slow = variable(runOn(zonalWaves, moving(3, 47, days), { waves: [3, 3] }), "phase_speed"); // 0.78 of 60°
-    const fast = variable(runOn(zonalWaves, moving(3, 49, days), { waves: [3, 3] }), "phase_speed"); // 0.82 of 60°
-    expect(slow.reasons).toBeUndefined();
-    expect(fast.reasons?.[0]).toBe(reasonCode("ambiguous"));
-    expect(Math.abs((fast.data[0] as number) - 49)).toBeLessThan(1e-9);
-  });
-
-  test("a record that is no time has no speeds, and says so", () => {
-    const cube = {
-      ...moving(2, 5, Float64Array.of(1, 7)),
-      steps: { kind: "record", name: "month", values: Float64Array.of(1, 7), calendar: "standard" } as const,
-    };
-    const out = runOn(zonalWaves, cube, { waves: [2, 2], drift_days: 5 });
-    expect(variable(out, "phase_speed").data[0]).toBeNaN();
-    expect(variable(out, "phase_speed").reasons?.[0]).toBe(reasonCode("no_time"));
-    expect(variable(out, "drift").reasons?.[0]).toBe(reasonCode("no_time"));
-    expect(variable(out, "stationarity_ratio").data[0]).toBeGreaterThan(0);
-    expect(out.notes.join()).toContain('"month"');
-  });
-
-  test("one step alone is too short; weak steps are dropped under the floor", () => {
-    expect(
-      variable(runOn(zonalWaves, moving(2, 5, Float64Array.of(3)), { waves: [2, 2] }), "phase_speed").reasons?.[0],
-    ).toBe(reasonCode("short"));
-    const cube = moving(
-      2,
-      5,
-      Float64Array.from({ length: 10 }, (_, i) => i),
-    );
-    // Day 4: the wave is nearly gone and its phase is nonsense
-    for (let i = 0; i < 36; i++) cube.values[4 * 36 + i] = 0.01 * Math.cos(2 * ((lon[i] as number) - 100) * RAD);
-    expect(
-      Math.abs((variable(runOn(zonalWaves, cube, { waves: [2, 2] }), "phase_speed").data[0] as number) - 5),
-    ).toBeLessThan(1e-9);
-    expect(
-      Math.abs(
-        (variable(runOn(zonalWaves, cube, { waves: [2, 2], amplitude_floor: 0 }), "phase_speed").data[0] as number) - 5,
-      ),
-    ).toBeGreaterThan(1e-6);
-  });
-
-  test("a wave with under half a per cent of the variance has no drift", () => {
-    const cube = moving(
-      2,
-      5,
-      Float64Array.from({ length: 10 }, (_, i) => i),
-    );
-    const drift = variable(runOn(zonalWaves, cube, { waves: [2, 3], drift_days: 4 }), "drift");
-    expect(drift.reasons?.[2 * 9 + 1]).toBe(reasonCode("small"));
-    expect(drift.reasons?.[2 * 9]).toBe(0);
-  });
-});
-
-describe("guards", () => {
-  const lon = Float64Array.from({ length: 36 }, (_, i) => 10 * i);
-  const cube = rowCube((l) => Math.cos(l * RAD), lon);
-  test("a missing value masks its own row and no other", () => {
-    const values = new Float64Array(72).map((_, i) => Math.cos((lon[i % 36] as number) * RAD));
-    values[5] = Number.NaN;
-    const amplitude = variable(
-      runOn(zonalWaves, { ...cube, values, lat: Float64Array.of(50, 60) }, { waves: [1, 1] }),
-      "amplitude",
-    );
-    expect(amplitude.reasons).toEqual(Uint8Array.of(reasonCode("missing"), 0));
-    expect(amplitude.data[0]).toBeNaN();
-    expect(Math.abs((amplitude.data[1] as number) - 1)).toBeLessThan(1e-14);
-  });
-  test.each([
-    [
-      "a grid that does not close the circle",
-      () =>
-        runOn(
-          zonalWaves,
-          rowCube(() => 1, lon.slice(0, 30)),
-        ),
-      "do not close the circle",
-    ],
-    [
-      "uneven columns",
-      () =>
-        runOn(
-          zonalWaves,
-          rowCube(
-            () => 1,
-            lon.map((l, i) => (i === 3 ? l + 1 : l)),
-          ),
-        ),
-      "not evenly spaced",
-    ],
-    ["a band without a row", () => runOn(zonalWaves, cube, { band: [60, 70] }), "holds no row"],
-    [
-      "a latitude off the grid",
-      () =>
-        runOn(zonalWaves, { ...cube, lat: Float64Array.of(50, 52), values: new Float64Array(72) }, { band: [70, 70] }),
-      "no row near",
-    ],
-    ["waves beyond the grid's", () => runOn(zonalWaves, cube, { waves: [20, 22] }), "carry waves 1 to 18"],
-    ["anomalies without a background", () => runOn(zonalWaves, cube, { of: "anomaly" }), "needs a background"],
-    ["a wave that cannot be put together", () => runOn(zonalWaves, cube, { reconstruct: [19] }), "wave 19 is beyond"],
-    [
-      "an incoherent reconstruction",
-      () => runOn(zonalWaves, cube, { band: [50, 60], average: "incoherent", reconstruct: [1] }),
-      "no phase",
-    ],
-    ["a point that is none", () => runOn(zonalWaves, cube, { point: [95, 0] }), "not a latitude"],
-  ])("%s is refused", (_words, run, words) => {
-    expect(run).toThrow(words);
-  });
-  test("waves are cut off where the grid ends", () => {
-    expect(variable(runOn(zonalWaves, cube, { waves: [17, 40] }), "amplitude").shape).toEqual([1, 1, 1, 2]);
-  });
 });
 
 test("turning the record east turns every ridge and changes nothing else; scaling scales", () => {

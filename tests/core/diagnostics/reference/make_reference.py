@@ -1,4 +1,4 @@
-"""Reference values for zonal waves and climatologies by numpy: writes waves.json beside this file.
+"""Reference values for zonal waves and climatologies by numpy and scipy: writes waves.json beside this file.
 
 Written from the definitions (c_k, weighted least squares, centred means), not from the project's code.
 Run: python3 make_reference.py
@@ -7,6 +7,8 @@ import json
 import pathlib
 
 import numpy as np
+import scipy
+import scipy.fft
 
 N_TIME, N_LAT, N_LON = 40, 9, 48
 LAT = np.linspace(40, 60, N_LAT)
@@ -45,6 +47,9 @@ def speed(c, k, days, floor=0.25):
     design = np.stack([d, np.ones_like(d)], axis=1) * np.sqrt(w)[:, None]
     solution, residual, *_ = np.linalg.lstsq(design, ridge * np.sqrt(w), rcond=None)
     covariance = np.linalg.inv(design.T @ design) * residual[0] / (len(d) - 2)
+    # The same by numpy's own routine: polyfit's weights multiply the residuals, and cov=True scales by chi2/(n - 2).
+    line, spread = np.polyfit(d, ridge, 1, w=np.sqrt(w), cov=True)
+    assert np.allclose([line[0], np.sqrt(spread[0, 0])], [solution[0], np.sqrt(covariance[0, 0])], rtol=1e-9)
     return float(solution[0]), float(np.sqrt(covariance[0, 0]))
 
 
@@ -57,7 +62,7 @@ c = coefficients(band, 6)
 rows = coefficients(x, 6)
 clim = coefficients(band.mean(axis=0), 6)
 anomaly = c - clim
-out = {"numpy": np.__version__, "band": {}, "incoherent": {}, "row4": {}, "climatology": {}}
+out = {"numpy": np.__version__, "scipy": scipy.__version__, "band": {}, "incoherent": {}, "row4": {}, "climatology": {}}
 ks = np.arange(1, 7)
 variance = band.var(axis=1)
 out["band"] = {
@@ -73,6 +78,19 @@ out["band"] = {
 }
 out["incoherent"] = {"amplitude": np.tensordot(2 * np.abs(rows[:, :, 1:]), weights, axes=(1, 0)).tolist()}
 out["row4"] = {"amplitude": (2 * np.abs(rows[:, 4, 1:])).tolist()}
+
+# Random rows, every wave, by scipy.fft; the first column lies at 3 degrees.
+noise = np.random.default_rng(7).standard_normal((4, 60))
+k = np.arange(1, 31)
+fine = scipy.fft.rfft(noise, axis=1)[:, 1:] / 60 * np.exp(-1j * k * np.deg2rad(3.0))
+once = np.where(k == 30, 1.0, 2.0)
+out["random"] = {
+    "rows": noise.tolist(),
+    "first": 3.0,
+    "amplitude": (once * np.abs(fine)).tolist(),
+    "ridge": np.mod(np.rad2deg(-np.angle(fine) / k), 360 / k).tolist(),
+    "share": (once * np.abs(fine) ** 2 / noise.var(axis=1)[:, None]).tolist(),
+}
 
 # Climatology: a year of gappy days, one cell at a time by numpy.linalg.lstsq
 year = np.arange(365.0)
@@ -91,7 +109,17 @@ def fit(values, n):
     return np.linalg.lstsq(basis[ok], values[ok], rcond=None)[0].tolist()
 
 
+def cycle(coefficients, points):
+    p = (np.arange(points) + 0.5) / points
+    basis = [np.ones_like(p)]
+    for h in range(1, (len(coefficients) - 1) // 2 + 1):
+        basis += [np.cos(2 * np.pi * h * p), np.sin(2 * np.pi * h * p)]
+    return (np.stack(basis, axis=1) @ np.array(coefficients)).tolist()
+
+
 out["climatology"] = {
+    "cycle": cycle(fit(y, 4), 12),
+    "cycle_gappy": cycle(fit(gappy, 2), 5),
     "full": fit(y, 4),
     "gappy": fit(gappy, 2),
     "mean_gappy": float(np.nanmean(gappy)),
