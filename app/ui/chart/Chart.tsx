@@ -1,68 +1,79 @@
 import { type PointerEvent, useEffect, useMemo, useRef, useState } from "react";
+import { FONT } from "../theme/tokens.ts";
+import { chartLayout } from "./chart-layout.ts";
 import { normalLongitude } from "./chart-map.ts";
-import { ChartMemory, drawChart, mapFor } from "./draw-chart.ts";
+import { ChartMemory } from "./chart-memory.ts";
+import { drawChart } from "./draw-chart.ts";
 import { canvasPen } from "./pen.ts";
 import type { ChartProps } from "./types.ts";
 
-export function newCanvas(width: number, height: number): HTMLCanvasElement {
-  const canvas = document.createElement("canvas");
-  canvas.width = width;
-  canvas.height = height;
-  return canvas;
-}
+const WEIGHTS = [400, 560, 620, 640] as const;
+const LEAST_SIZE = 50;
 
 /** True once the app's type is there: a drawing made before would keep the wrong one. */
 function useFont(): boolean {
-  const [ready, setReady] = useState(false);
+  const [isReady, setReady] = useState(false);
   useEffect(() => {
-    let live = true;
-    const faces = ["400 12px", "560 12px", "620 12px", "640 12px"].map((size) =>
-      document.fonts.load(`${size} "Sofia Sans Variable"`, "0°Nk−"),
-    );
-    void Promise.allSettled(faces).then(() => live && setReady(true));
+    let isLive = true;
+    const faces = WEIGHTS.map((weight) => document.fonts.load(`${weight} 12px ${FONT}`, "0°Nk−"));
+    void Promise.allSettled(faces).then(() => isLive && setReady(true));
     return () => {
-      live = false;
+      isLive = false;
     };
   }, []);
-  return ready;
+  return isReady;
 }
 
-/**
- * The chart: a click moves the cursor; pulled with Shift held, the hemisphere turns.
- */
-export function Chart({ view, layers, theme, width, height, isWaiting = false, onCursor, onTurn }: ChartProps) {
+/** Where the hand took hold: degrees of the turn or the cut less those of the pointer. */
+type Hold = number | null;
+
+/** The chart: a click or a pull moves the cursor; pulled with Shift held, the hemisphere turns and the belt moves along. */
+export function Chart(props: ChartProps) {
+  const { view, layers, theme, width, height, isWaiting = false, onCursor, onTurn, onCut, onHover } = props;
   const canvas = useRef<HTMLCanvasElement>(null);
-  const density = Math.max(2, Math.ceil(globalThis.devicePixelRatio ?? 1));
-  const memory = useMemo(() => new ChartMemory(newCanvas, density), [density]);
+  const density = Math.max(1, globalThis.devicePixelRatio ?? 1);
+  const memory = useMemo(() => new ChartMemory(), []);
   const hasFont = useFont();
-  const pulled = useRef<number | null>(null);
+  const hold = useRef<Hold>(null);
 
   useEffect(() => {
     const element = canvas.current;
     const context = element?.getContext("2d");
-    if (!element || !context || !hasFont || width < 50 || height < 50) return;
-    element.width = Math.round(width * density);
-    element.height = Math.round(height * density);
+    if (!element || !context || !hasFont || width < LEAST_SIZE || height < LEAST_SIZE) return;
+    const [wide, tall] = [Math.round(width * density), Math.round(height * density)];
+    // Setting the size clears the canvas and costs a new one: only when it changes.
+    if (element.width !== wide || element.height !== tall) {
+      element.width = wide;
+      element.height = tall;
+    }
     context.setTransform(density, 0, 0, density, 0, 0);
     context.clearRect(0, 0, width, height);
-    drawChart(canvasPen(context), view, layers, theme, width, height, memory);
+    // Letters at fractions of a pixel: turned numbers would else be spaced unevenly.
+    context.textRendering = "geometricPrecision";
+    const raster = { context, density, shadingDensity: Math.max(2, density) };
+    drawChart(canvasPen(context), raster, view, layers, theme, width, height, memory);
   }, [view, layers, theme, width, height, density, memory, hasFont]);
 
-  const map = useMemo(() => mapFor(view, width, height), [view, width, height]);
-  const placeOf = (event: PointerEvent): readonly [number, number] => {
+  const { map } = useMemo(() => chartLayout(view, width, height), [view, width, height]);
+  const placeOf = (event: PointerEvent): readonly [x: number, y: number] => {
     const box = (event.currentTarget as HTMLElement).getBoundingClientRect();
     return [event.clientX - box.left, event.clientY - box.top];
   };
-  const angleOf = ([x, y]: readonly [number, number]): number =>
-    (Math.atan2((view.hemisphere === "north" ? 1 : -1) * (x - map.cx), y - map.cy) * 180) / Math.PI;
+  /** Degrees east of the map's first longitude. */
+  const eastOf = (event: PointerEvent): number => map.beyond(...placeOf(event))[0];
+  const take = view.kind === "hemisphere" ? onTurn : onCut;
   const follow = (event: PointerEvent): void => {
-    const place = placeOf(event);
-    if (pulled.current !== null && onTurn !== undefined) {
-      onTurn(normalLongitude(Math.round(pulled.current - angleOf(place))));
+    if (hold.current !== null && take !== undefined) {
+      take(normalLongitude(Math.round(hold.current - eastOf(event))));
       return;
     }
-    const here = map.lonLat(...place);
+    const here = map.lonLat(...placeOf(event));
     if (here !== null) onCursor(here[1], here[0]);
+  };
+  const tell = (event: PointerEvent): void => {
+    if (onHover === undefined) return;
+    const here = map.lonLat(...placeOf(event));
+    onHover(here === null ? null : { lon: here[0], lat: here[1] });
   };
   return (
     <canvas
@@ -73,13 +84,15 @@ export function Chart({ view, layers, theme, width, height, isWaiting = false, o
       aria-label={[...layers.caption, ...layers.readout].join(", ")}
       style={{ width, height, opacity: isWaiting ? 0.4 : 1 }}
       onPointerDown={(event) => {
-        event.currentTarget.setPointerCapture(event.pointerId);
-        pulled.current = event.shiftKey && view.kind === "hemisphere" ? view.turn + angleOf(placeOf(event)) : null;
+        if (event.isTrusted) event.currentTarget.setPointerCapture(event.pointerId);
+        hold.current = event.shiftKey && take !== undefined ? map.firstLon + eastOf(event) : null;
         follow(event);
       }}
       onPointerMove={(event) => {
+        tell(event);
         if (event.buttons === 1) follow(event);
       }}
+      onPointerLeave={() => onHover?.(null)}
     />
   );
 }

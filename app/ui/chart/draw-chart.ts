@@ -1,102 +1,57 @@
-import { FONT, THEMES, type ThemeName } from "../theme/tokens.ts";
-import { type ChartMap, chartMap } from "./chart-map.ts";
+import { signedText } from "../text/number-text.ts";
+import { FONT, THEMES, type ThemeName, type Tokens } from "../theme/tokens.ts";
+import { type ChartLayout, chartLayout } from "./chart-layout.ts";
+import type { ChartMap } from "./chart-map.ts";
+import { type ChartMemory, clearCanvas } from "./chart-memory.ts";
 import { type ContourLine, contourLines } from "./contour-lines.ts";
-import { contourLabels, drawContours, insideMap } from "./draw-contours.ts";
-import { drawCoast, drawFrame, drawGraticule, drawGraticuleNames, drawLand, outline } from "./draw-ground.ts";
-import { drawBand, drawCursor, drawLabels, drawRim, drawTexts } from "./draw-marks.ts";
+import { drawFrame, drawLand, drawNames, graticuleNames, NAME_FONT, outline } from "./draw-ground.ts";
+import { drawCaptions, drawKeys } from "./draw-keys.ts";
+import {
+  cursorBoxes,
+  drawBand,
+  drawContours,
+  drawCursor,
+  drawLabels,
+  drawPeaks,
+  LINE_LABEL_FONT,
+  PEAK_FONT,
+} from "./draw-marks.ts";
+import { drawRim } from "./draw-rim.ts";
+import { drawBands, drawMask } from "./draw-shading.ts";
 import { extrema } from "./extrema.ts";
 import { type FineField, fineField } from "./fine-grid.ts";
-import { labelBox, placedLabels, type WantedLabel } from "./labels.ts";
-import type { Pen, PixelPicture } from "./pen.ts";
-import { type PixelTable, pixelTable, shadedPixels } from "./pixel-table.ts";
-import type { ChartGrid, ChartLayers, ChartView } from "./types.ts";
+import { type PlacedLabel, placedLabels, type TurnedBox, type WantedLabel } from "./labels.ts";
+import { isOnMap, lineLabels } from "./line-labels.ts";
+import { canvasPen, type Pen } from "./pen.ts";
+import { pixelTable, shadedPixels } from "./pixel-table.ts";
+import { missingPlaces, type Plane } from "./plane-rings.ts";
+import type { ChartLayers, ChartView } from "./types.ts";
 
-/** Room round the map for captions, keys, frame and rim. */
-function margins(view: ChartView): { top: number; right: number; bottom: number; left: number } {
-  return view.kind === "hemisphere"
-    ? { top: 48, right: 44, bottom: 48, left: 44 }
-    : { top: 48, right: 14, bottom: 66, left: 46 };
+/** A canvas to draw on by pixels; without one the drawing is made of areas and lines alone. */
+export interface Raster {
+  readonly context: CanvasRenderingContext2D;
+  /** Pixels of the canvas per pixel of the drawing. */
+  readonly density: number;
+  /** Pixels of the shading per pixel of the drawing: at least 2, for even band edges. */
+  readonly shadingDensity: number;
 }
 
-export function mapFor(view: ChartView, width: number, height: number): ChartMap {
-  return chartMap(view, width, height, margins(view));
-}
-
-/** What a chart keeps from one picture to the next: the table of its view, and the lines and pixels of its fields. */
-export class ChartMemory {
-  #table: { key: string; table: PixelTable } | null = null;
-  #shade: { values: Float32Array; key: string; picture: PixelPicture; masked: boolean } | null = null;
-  #lines: { values: Float32Array; interval: number; lines: ContourLine[] } | null = null;
-  readonly #canvas: (width: number, height: number) => HTMLCanvasElement;
-  readonly #density: number;
-
-  /** @param density Pixels of the shading per pixel of the drawing. */
-  constructor(canvas: (width: number, height: number) => HTMLCanvasElement, density: number) {
-    this.#canvas = canvas;
-    this.#density = density;
-  }
-
-  lines(grid: ChartGrid, values: Float32Array, interval: number): ContourLine[] {
-    if (this.#lines?.values !== values || this.#lines.interval !== interval)
-      this.#lines = { values, interval, lines: contourLines(fineField(grid, values), interval) };
-    return this.#lines.lines;
-  }
-
-  #tableFor(map: ChartMap, field: FineField): PixelTable {
-    const key = JSON.stringify([
-      map.view,
-      map.width,
-      map.height,
-      field.nLat,
-      field.nLon,
-      field.lat0,
-      field.lon0,
-      field.closesCircle,
-    ]);
-    if (this.#table?.key !== key) this.#table = { key, table: pixelTable(map, field, this.#density) };
-    return this.#table.table;
-  }
-
-  shade(
-    map: ChartMap,
-    grid: ChartGrid,
-    values: Float32Array,
-    step: number,
-    theme: ThemeName,
-  ): { picture: PixelPicture; masked: boolean } {
-    const key = JSON.stringify([map.view, map.width, map.height, step, theme]);
-    if (this.#shade?.values === values && this.#shade.key === key) return this.#shade;
-    const field = fineField(grid, values);
-    const table = this.#tableFor(map, field);
-    const canvas = this.#canvas(table.width, table.height);
-    const context = canvas.getContext("2d") as CanvasRenderingContext2D;
-    const image = context.createImageData(table.width, table.height);
-    const masked = shadedPixels(table, field, step, theme, image.data);
-    context.putImageData(image, 0, 0);
-    this.#shade = { values, key, picture: { canvas, dataUrl: () => canvas.toDataURL("image/png") }, masked };
-    return this.#shade;
-  }
-}
-
-/** Dots where there is no value, under the shading. */
-function stipple(pen: Pen, map: ChartMap, colour: string): void {
-  pen.save();
-  outline(pen, map);
-  pen.clip();
-  pen.fillStyle = colour;
-  pen.beginPath();
-  for (let y = map.box.y; y < map.box.y + map.box.height; y += 5)
-    for (let x = map.box.x + (Math.round(y / 5) % 2) * 2.5; x < map.box.x + map.box.width; x += 5) {
-      pen.moveTo(x + 0.8, y);
-      pen.arc(x, y, 0.8, 0, 2 * Math.PI);
-    }
-  pen.fill();
-  pen.restore();
+/** All that the parts of a drawing have in common. */
+interface Drawing {
+  readonly pen: Pen;
+  readonly raster: Raster | null;
+  readonly layout: ChartLayout;
+  readonly map: ChartMap;
+  readonly layers: ChartLayers;
+  readonly theme: ThemeName;
+  readonly tokens: Tokens;
+  readonly memory: ChartMemory;
 }
 
 /** Draw the whole chart; everything it shows is in `view` and `layers`. */
 export function drawChart(
   pen: Pen,
+  raster: Raster | null,
   view: ChartView,
   layers: ChartLayers,
   theme: ThemeName,
@@ -105,85 +60,275 @@ export function drawChart(
   memory: ChartMemory,
 ): void {
   const tokens = THEMES[theme];
-  const map = mapFor(view, width, height);
-  const north = view.hemisphere === "north" ? 1 : -1;
+  const layout = memory.kept("layout", [...Object.values(view), width, height], () => chartLayout(view, width, height));
+  const { map } = layout;
+  const drawing: Drawing = { pen, raster, layout, map, layers, theme, tokens, memory };
+  const missing = drawGround(drawing);
+  drawBand(pen, map, layers.band, tokens);
+  drawFrame(pen, map, tokens);
+  drawTexts(drawing, missing);
+  const { rim, shading, band, grid } = layers;
+  if (rim !== null)
+    drawRim(pen, layout, rim, grid.lon, band, shading?.step ?? null, shading?.units ?? "", theme, tokens);
+  drawCursor(pen, layout, layers.cursor, theme, tokens);
+  drawCaptions(pen, layout, layers, tokens);
+  drawKeys(pen, layout, layers, theme, tokens);
+}
+
+function shadingField({ layers, map, memory }: Drawing): FineField | null {
+  const { grid, shading } = layers;
+  if (shading === null) return null;
+  return memory.kept("shading", [grid, shading.values, map.north], () => fineField(grid, shading.values, map.north));
+}
+
+function lines({ layers, map, memory }: Drawing): readonly ContourLine[] {
+  const { grid, contours } = layers;
+  if (contours === null) return [];
+  return memory.kept("lines", [grid, contours.values, contours.interval, map.north], () =>
+    contourLines(fineField(grid, contours.values, map.north), contours.interval),
+  );
+}
+
+/**
+ * Sheet, shading, land and contours: all that stays while the cursor moves, and so is kept as a picture.
+ *
+ * @returns Samples of the map if values are missing on it, else null.
+ */
+function drawGround(drawing: Drawing): Plane | null {
+  const { pen, raster, map, layers, theme, memory } = drawing;
+  const { shading, contours, grid } = layers;
+  if (raster === null) return drawGroundLines(drawing, pen);
+  const { context, density, shadingDensity } = raster;
+  const ground = memory.kept<{ canvas: HTMLCanvasElement; missing: Plane | null }>(
+    "ground",
+    [
+      map,
+      theme,
+      grid,
+      shading?.values ?? null,
+      shading?.step,
+      contours?.values ?? null,
+      contours?.interval,
+      contours?.boldEach,
+      density,
+      shadingDensity,
+    ],
+    (old) => {
+      const canvas = clearCanvas(old?.canvas, Math.round(map.width * density), Math.round(map.height * density));
+      const own = canvas.getContext("2d") as CanvasRenderingContext2D;
+      own.setTransform(density, 0, 0, density, 0, 0);
+      const missing = drawGroundLines(
+        { ...drawing, raster: { context: own, density, shadingDensity } },
+        canvasPen(own),
+      );
+      return { canvas, missing };
+    },
+  );
+  context.drawImage(ground.canvas, 0, 0, map.width, map.height);
+  return ground.missing;
+}
+
+function drawGroundLines(drawing: Drawing, pen: Pen): Plane | null {
+  const { raster, map, layers, theme, tokens } = drawing;
+  const { shading, contours } = layers;
   outline(pen, map);
   pen.fillStyle = tokens.sheet;
   pen.fill();
-  const { shading, contours, grid } = layers;
-  let masked = false;
-  if (shading !== null) {
-    const shade = memory.shade(map, grid, shading.values, shading.step, theme);
-    masked = shade.masked;
-    if (masked) stipple(pen, map, tokens.rule2);
-    pen.save();
-    outline(pen, map);
-    pen.clip();
-    pen.picture(shade.picture, 0, 0, width, height);
-    pen.restore();
+  const field = shadingField(drawing);
+  let missing: Plane | null = null;
+  if (field !== null && shading !== null) {
+    const isMasked = raster === null ? hasMissing(field) : drawPixels(drawing, raster, field, shading.step);
+    if (raster === null) drawBands(pen, map, field, shading.step, theme);
+    if (isMasked) missing = drawMask(pen, map, field, tokens);
   }
-  drawLand(pen, map, tokens);
-  drawGraticule(pen, map, tokens);
-  drawCoast(pen, map, tokens);
-  const lines = contours === null ? [] : memory.lines(grid, contours.values, contours.interval);
-  if (contours !== null) drawContours(pen, map, lines, contours.interval, contours.boldEach, tokens);
-  drawGraticuleNames(pen, map, tokens);
-  drawBand(pen, map, layers.band, tokens);
-  drawFrame(pen, map, tokens);
+  if (raster === null) drawLand(pen, map, tokens);
+  else drawLandPicture(drawing, raster);
+  if (contours !== null) drawContours(pen, map, lines(drawing), contours.interval, contours.boldEach, tokens);
+  return missing;
+}
 
-  // Labels: the extremes first, then the lines' numbers, clear of the cursor and of the meridians' names.
-  const wanted: WantedLabel[] = [];
-  pen.save();
-  pen.font = `640 13px ${FONT}`;
-  const peaks = shading === null ? [] : extrema(grid, shading.values, 2 * shading.step, north, 8);
-  for (const peak of peaks) {
+function hasMissing(field: FineField): boolean {
+  return field.values.some(Number.isNaN);
+}
+
+/** The shading pixel by pixel. @returns Whether values are missing. */
+function drawPixels({ map, theme, memory }: Drawing, raster: Raster, field: FineField, step: number): boolean {
+  const { context, shadingDensity: density } = raster;
+  const { x, y, width, height } = map.box;
+  const { nLat, nLon, lat0, dLat, dLon } = field;
+  const table = memory.kept(
+    "table",
+    [map.view.kind, map.north, x, y, width, height, nLat, nLon, lat0, dLat, dLon, density],
+    () => pixelTable(map, field, density),
+  );
+  const scratch = memory.kept<{ canvas: HTMLCanvasElement; image: ImageData }>("pixels", [table], (old) => {
+    const canvas = clearCanvas(old?.canvas, table.width, table.height);
+    return { canvas, image: new ImageData(table.width, table.height) };
+  });
+  const words = new Uint32Array(scratch.image.data.buffer);
+  words.fill(0);
+  const isMasked = shadedPixels(table, field, map.firstLon, step, theme, words);
+  (scratch.canvas.getContext("2d") as CanvasRenderingContext2D).putImageData(scratch.image, 0, 0);
+  context.save();
+  outline(canvasPen(context), map);
+  context.clip();
+  context.drawImage(
+    scratch.canvas,
+    table.x0 / density,
+    table.y0 / density,
+    table.width / density,
+    table.height / density,
+  );
+  context.restore();
+  return isMasked;
+}
+
+/** Land, graticule and coastlines from the picture of this view. */
+function drawLandPicture({ map, theme, tokens, memory }: Drawing, { context, density }: Raster): void {
+  const canvas = memory.kept<HTMLCanvasElement>("land", [map, theme, density], (old) => {
+    const made = clearCanvas(old, Math.round(map.width * density), Math.round(map.height * density));
+    const own = made.getContext("2d") as CanvasRenderingContext2D;
+    own.setTransform(density, 0, 0, density, 0, 0);
+    drawLand(canvasPen(own), map, tokens);
+    return made;
+  });
+  context.drawImage(canvas, 0, 0, map.width, map.height);
+}
+
+/** Extremes shown at most; each is at least this many steps in size. */
+const MOST_PEAKS = 8;
+const LEAST_STEPS = 2;
+const PEAK_OFFSET = 13;
+/** px about a value: a contour's number close by would be read with it. */
+const PEAK_GAP = 4;
+
+interface Peak extends WantedLabel {
+  readonly x: number;
+  readonly y: number;
+}
+
+/** Signed values of the shading's extremes, above, below or beside their dots. */
+function peaks({ map, layers, pen }: Drawing): Peak[] {
+  const { shading, grid } = layers;
+  if (shading === null) return [];
+  pen.font = PEAK_FONT;
+  return extrema(grid, shading.values, LEAST_STEPS * shading.step, map.north, MOST_PEAKS).flatMap((peak) => {
     const [x, y] = map.xy(peak.lon, peak.lat);
-    const digits = shading !== null && shading.step < 2 ? 1 : 0;
-    const text = `${peak.value < 0 ? "−" : "+"}${Math.abs(peak.value).toFixed(digits)}`;
-    wanted.push({ text, width: pen.measureText(text).width + 4, height: 14, places: [{ x, y, angle: 0 }] });
-  }
+    if (map.lonLat(x, y) === null) return [];
+    const text = signedText(peak.value, shading.step < 2 ? 1 : 0);
+    const width = pen.measureText(text).width;
+    const aside = width / 2 + 7;
+    const places = [
+      [0, -PEAK_OFFSET],
+      [0, PEAK_OFFSET],
+      [aside, 0],
+      [-aside, 0],
+      [aside, -PEAK_OFFSET * 0.8],
+      [-aside, -PEAK_OFFSET * 0.8],
+      [aside, PEAK_OFFSET * 0.8],
+      [-aside, PEAK_OFFSET * 0.8],
+      // Further out, past the cursor's ring.
+      [aside + 10, 0],
+      [-aside - 10, 0],
+      [0, -2 * PEAK_OFFSET],
+      [0, 2 * PEAK_OFFSET],
+    ].map(([dx, dy]) => ({ x: x + (dx as number), y: y + (dy as number), angle: 0 }));
+    return [{ text, width, height: 12, gap: PEAK_GAP, places, x, y }];
+  });
+}
+
+const MASK_FONT = `400 12px ${FONT}`;
+
+/** Names, numbers of contours and extremes, and the reason for what is missing, none on another. */
+function drawTexts(drawing: Drawing, missing: Plane | null): void {
+  const { pen, layout, map, layers, theme, tokens, memory } = drawing;
+  const { cursor, contours, shading, grid, maskWords } = layers;
+  pen.save();
+  pen.font = NAME_FONT;
+  const names = graticuleNames(map, cursor.lon, (text) => pen.measureText(text).width);
+  const inside = names.filter(({ isOutside }) => !isOutside);
+  const wanted = memory.kept(
+    "wanted",
+    [map, theme, grid, shading?.values ?? null, shading?.step, contours?.values ?? null, contours?.interval, maskWords],
+    () => {
+      const peakLabels = peaks(drawing);
+      pen.font = LINE_LABEL_FONT;
+      const numbers =
+        contours === null
+          ? []
+          : lineLabels(
+              map,
+              lines(drawing),
+              contours.interval,
+              contours.boldEach,
+              (text) => pen.measureText(text).width,
+            );
+      pen.font = MASK_FONT;
+      const reason: WantedLabel[] =
+        missing === null
+          ? []
+          : [
+              {
+                text: maskWords,
+                width: pen.measureText(maskWords).width + 16,
+                height: 18,
+                places: missingPlaces(map, missing),
+              },
+            ];
+      return { peakLabels, reason, all: [...reason, ...peakLabels, ...numbers] };
+    },
+  );
+  const dots = wanted.peakLabels.map(({ x, y }): TurnedBox => ({ x, y, angle: 0, width: 4, height: 4 }));
+  const isInside = isOnMap(map);
+  // First without the cursor, so that numbers do not wander while it is moved; then only those in its way step aside.
+  const settled = memory.kept("settled", [wanted, map], () =>
+    placedLabels(
+      wanted.all,
+      [...graticuleNames(map, Number.NaN, (text) => pen.measureText(text).width).filter((n) => !n.isOutside), ...dots],
+      isInside,
+    ),
+  );
+  const placed = placedLabels(wanted.all, [...inside, ...dots, ...cursorBoxes(layout, cursor)], isInside, settled);
+  const firstPeak = wanted.reason.length;
+  const firstNumber = firstPeak + wanted.peakLabels.length;
+  const isPeak = ({ index }: PlacedLabel): boolean => index >= firstPeak && index < firstNumber;
+  drawNames(pen, names, tokens);
+  drawLabels(
+    pen,
+    placed.filter(({ index }) => index >= firstNumber),
+    LINE_LABEL_FONT,
+    tokens,
+  );
+  drawPeaks(
+    pen,
+    placed.filter(isPeak).map(({ index }) => wanted.peakLabels[index - firstPeak] as Peak),
+    tokens,
+  );
+  drawLabels(pen, placed.filter(isPeak), PEAK_FONT, tokens);
+  for (const label of placed.filter(({ index }) => index < firstPeak)) drawReason(pen, label, wanted.reason, tokens);
   pen.restore();
-  if (contours !== null) wanted.push(...contourLabels(pen, map, lines, contours.interval, contours.boldEach));
-  const [cx, cy] = map.xy(layers.cursor.lon, layers.cursor.lat);
-  const taken = [labelBox({ x: cx, y: cy, angle: 0 }, 26, 26)];
-  if (view.kind === "hemisphere")
-    for (const lat of [40, 60, 80]) {
-      const [x, y] = map.xy(view.turn + 172, north * lat);
-      taken.push(labelBox({ x, y, angle: 0 }, 30, 13));
-    }
-  const placed = placedLabels(wanted, taken, insideMap(map));
-  drawLabels(
-    pen,
-    placed.filter(({ index }) => index >= peaks.length),
-    tokens,
-    `560 10.5px ${FONT}`,
-  );
-  drawLabels(
-    pen,
-    placed.filter(({ index }) => index < peaks.length),
-    tokens,
-    `640 13px ${FONT}`,
-  );
-  if (layers.rim !== null) drawRim(pen, map, layers.rim, grid.lon, theme, tokens);
-  drawCursor(pen, map, layers.cursor, theme, tokens);
-  drawTexts(pen, map, layers, tokens);
-  if (masked) {
-    pen.save();
-    pen.font = `400 12px ${FONT}`;
-    const text = `dotted: ${layers.maskWords}`;
-    const w = pen.measureText(text).width + 14;
-    const y = view.kind === "belt" ? map.box.y + map.box.height - 26 : map.cy + map.radius - 40;
-    pen.beginPath();
-    pen.rect(map.cx - w / 2, y, w, 20);
-    pen.fillStyle = tokens.sheet;
-    pen.fill();
-    pen.strokeStyle = tokens.rule2;
-    pen.lineWidth = 1;
-    pen.stroke();
-    pen.fillStyle = tokens.ink2;
-    pen.textAlign = "center";
-    pen.textBaseline = "middle";
-    pen.fillText(text, map.cx, y + 10.5);
-    pen.restore();
-  }
+}
+
+/** Why values are missing, in a frame on the spot. */
+function drawReason(
+  pen: Pen,
+  { x, y, text, index }: PlacedLabel,
+  reasons: readonly WantedLabel[],
+  tokens: Tokens,
+): void {
+  const { width, height } = reasons[index] as WantedLabel;
+  pen.save();
+  pen.beginPath();
+  pen.rect(Math.round(x - width / 2) + 0.5, Math.round(y - height / 2) + 0.5, Math.round(width), Math.round(height));
+  pen.fillStyle = tokens.sheet;
+  pen.fill();
+  pen.strokeStyle = tokens.rule2;
+  pen.lineWidth = 1;
+  pen.stroke();
+  pen.font = MASK_FONT;
+  pen.fillStyle = tokens.ink2;
+  pen.textAlign = "center";
+  pen.textBaseline = "middle";
+  pen.fillText(text, x, y + 0.5);
+  pen.restore();
 }

@@ -2,96 +2,151 @@ import { rampColour, THEMES, type ThemeName } from "../theme/tokens.ts";
 import type { ChartMap } from "./chart-map.ts";
 import type { FineField } from "./fine-grid.ts";
 
-/** For every pixel of a chart the cell of the fine grid it lies in and where within it; made once per view, size and grid. */
+/**
+ * For every pixel of a map the row of the fine grid it lies in and how far east of the map's first longitude; made once per
+ * size, hemisphere and grid. The chart may be turned without making it anew.
+ */
 export interface PixelTable {
+  /** The map's box in pixels of the table. */
+  readonly x0: number;
+  readonly y0: number;
   readonly width: number;
   readonly height: number;
-  /** Index of the cell's south-west point; −1 off the chart or off the grid. */
-  readonly cell: Int32Array;
-  /** Index of its south-east point. */
-  readonly east: Int32Array;
-  /** Share of the way east and north. */
-  readonly dx: Float32Array;
+  /** Pixels that lie on the map and on the grid's rows. */
+  readonly pixel: Int32Array;
+  /** For each: index of the first value of the row south of it, share of the way to the next row, columns east of the map's first longitude. */
+  readonly row: Int32Array;
   readonly dy: Float32Array;
+  readonly east: Float32Array;
 }
+
+/** Half a pixel more than the map: its edge is cut by the clip, not by the table. */
+const OVERLAP = 1;
 
 /** @param density Pixels of the table per pixel of the drawing. */
 export function pixelTable(map: ChartMap, field: FineField, density: number): PixelTable {
-  const width = Math.round(map.width * density);
-  const height = Math.round(map.height * density);
-  const cell = new Int32Array(width * height).fill(-1);
-  const east = new Int32Array(width * height);
-  const dx = new Float32Array(width * height);
-  const dy = new Float32Array(width * height);
-  const { nLat, nLon, lat0, dLat, lon0, dLon, closesCircle } = field;
+  const x0 = Math.floor((map.box.x - OVERLAP) * density);
+  const y0 = Math.floor((map.box.y - OVERLAP) * density);
+  const width = Math.ceil((map.box.x + map.box.width + OVERLAP) * density) - x0;
+  const height = Math.ceil((map.box.y + map.box.height + OVERLAP) * density) - y0;
+  const count = width * height;
+  const pixel = new Int32Array(count);
+  const row = new Int32Array(count);
+  const dy = new Float32Array(count);
+  const east = new Float32Array(count);
+  const { nLat, nLon, lat0, dLat, dLon } = field;
+  const reach = map.radius === 0 ? Number.POSITIVE_INFINITY : (map.radius + OVERLAP) ** 2;
+  let n = 0;
   for (let j = 0; j < height; j++) {
+    const y = (y0 + j + 0.5) / density;
     for (let i = 0; i < width; i++) {
-      const place = map.lonLat((i + 0.5) / density, (j + 0.5) / density);
-      if (place === null) continue;
-      const x = ((((place[0] - lon0) % 360) + 360) % 360) / dLon;
-      // Half a row beyond the last is still its own: the pole of a grid without pole rows.
-      const y = Math.min(nLat - 1, Math.max(0, (place[1] - lat0) / dLat));
-      if (Math.abs((place[1] - lat0) / dLat - y) > 1) continue;
-      const column = Math.floor(x);
-      if (!closesCircle && column >= nLon - 1) continue;
-      const row = Math.min(nLat - 2, Math.floor(y));
-      const at = j * width + i;
-      const c = column % nLon;
-      cell[at] = row * nLon + c;
-      east[at] = row * nLon + ((c + 1) % nLon);
-      dx[at] = x - column;
-      dy[at] = y - row;
+      const x = (x0 + i + 0.5) / density;
+      if ((x - map.cx) ** 2 + (y - map.cy) ** 2 > reach) continue;
+      const [lon, lat] = map.beyond(x, y);
+      const position = (lat - lat0) / dLat;
+      if (position < 0 || position > nLat - 1) continue;
+      const r = Math.min(nLat - 2, Math.floor(position));
+      pixel[n] = j * width + i;
+      row[n] = r * nLon;
+      dy[n] = position - r;
+      east[n] = lon / dLon;
+      n += 1;
     }
   }
-  return { width, height, cell, east, dx, dy };
+  return {
+    x0,
+    y0,
+    width,
+    height,
+    pixel: pixel.slice(0, n),
+    row: row.slice(0, n),
+    dy: dy.slice(0, n),
+    east: east.slice(0, n),
+  };
 }
 
-/** Colours of the ramp as bytes: 7 below, the sheet, 7 above. */
-function rampBytes(theme: ThemeName): Uint8Array {
-  const out = new Uint8Array(15 * 3);
+/** Columns from the grid's first longitude to the map's. */
+export function firstColumn(field: FineField, firstLon: number): number {
+  return ((((firstLon - field.lon0) % 360) + 360) % 360) / field.dLon;
+}
+
+/** Bilinear value of a field, `column` anywhere on the circle; NaN beyond its ends and where a corner is missing. */
+export function valueAt(field: FineField, row: number, dy: number, column: number): number {
+  const { values, nLon, dLon, closesCircle } = field;
+  const circle = 360 / dLon;
+  const x = column >= circle ? column - circle : column;
+  let west = Math.floor(x);
+  if (west >= nLon) {
+    if (!closesCircle) return Number.NaN;
+    west = nLon - 1;
+  }
+  if (!closesCircle && west >= nLon - 1) return Number.NaN;
+  const dx = x - west;
+  const from = row * nLon;
+  const east = west + 1 === nLon ? 0 : west + 1;
+  const south = (values[from + west] as number) * (1 - dx) + (values[from + east] as number) * dx;
+  const north = (values[from + nLon + west] as number) * (1 - dx) + (values[from + nLon + east] as number) * dx;
+  return south * (1 - dy) + north * dy;
+}
+
+/** Colours of the ramp as RGBA words in the machine's byte order: 7 below, the sheet, 7 above. */
+function rampWords(theme: ThemeName): Uint32Array {
+  const words = new Uint32Array(15);
+  const bytes = new Uint8Array(words.buffer);
   for (let band = -7; band <= 7; band++) {
     const colour = rampColour(band + 0.5 * Math.sign(band), 1, theme) ?? THEMES[theme].sheet;
     for (let part = 0; part < 3; part++)
-      out[3 * (band + 7) + part] = Number.parseInt(colour.slice(1 + 2 * part, 3 + 2 * part), 16);
+      bytes[4 * (band + 7) + part] = Number.parseInt(colour.slice(1 + 2 * part, 3 + 2 * part), 16);
+    bytes[4 * (band + 7) + 3] = 255;
   }
-  return out;
+  return words;
 }
 
-/** RGBA of the shading: stepped bands; missing values and what is off the chart stay clear. @returns Bytes, and whether any cell is masked. */
+/**
+ * Stepped bands of a field, one RGBA word per pixel; what is missing or off the map stays clear.
+ *
+ * @param into width × height of the table, all clear.
+ * @returns Whether anything on the map is missing.
+ */
 export function shadedPixels(
   table: PixelTable,
   field: FineField,
+  firstLon: number,
   step: number,
   theme: ThemeName,
-  into: Uint8ClampedArray,
+  into: Uint32Array,
 ): boolean {
-  const { cell, east, dx, dy } = table;
-  const { values, nLon } = field;
-  const bytes = rampBytes(theme);
-  let masked = false;
-  for (let at = 0, p = 0; at < cell.length; at++, p += 4) {
-    const sw = cell[at] as number;
-    if (sw < 0) {
-      into[p + 3] = 0;
-      continue;
+  const { pixel, row, dy, east } = table;
+  const { values, nLon, dLon, closesCircle } = field;
+  const words = rampWords(theme);
+  const shift = firstColumn(field, firstLon);
+  const circle = 360 / dLon;
+  const last = nLon - 1;
+  const perStep = 1 / step;
+  let isMasked = false;
+  // valueAt() once more, without its calls: this loop is most of a picture's time.
+  for (let n = 0; n < pixel.length; n++) {
+    let x = (east[n] as number) + shift;
+    if (x >= circle) x -= circle;
+    let west = x | 0;
+    if (west >= last) {
+      if (!closesCircle) {
+        isMasked = true;
+        continue;
+      }
+      if (west > last) west = last;
     }
-    const se = east[at] as number;
-    const x = dx[at] as number;
-    const y = dy[at] as number;
-    const south = (values[sw] as number) * (1 - x) + (values[se] as number) * x;
-    const north = (values[sw + nLon] as number) * (1 - x) + (values[se + nLon] as number) * x;
-    const value = south * (1 - y) + north * y;
-    if (Number.isNaN(value)) {
-      masked = true;
-      into[p + 3] = 0;
-      continue;
-    }
-    const size = Math.min(7, Math.floor(Math.abs(value) / step));
-    const from = 3 * (value < 0 ? 7 - size : 7 + size);
-    into[p] = bytes[from] as number;
-    into[p + 1] = bytes[from + 1] as number;
-    into[p + 2] = bytes[from + 2] as number;
-    into[p + 3] = 255;
+    const dx = x - west;
+    const sw = (row[n] as number) + west;
+    const se = west === last ? sw - last : sw + 1;
+    const a = values[sw] as number;
+    const b = values[sw + nLon] as number;
+    const south = a + ((values[se] as number) - a) * dx;
+    const value = (south + (b + ((values[se + nLon] as number) - b) * dx - south) * (dy[n] as number)) * perStep;
+    if (value >= 1) into[pixel[n] as number] = words[value >= 7 ? 14 : 7 + (value | 0)] as number;
+    else if (value <= -1) into[pixel[n] as number] = words[value <= -7 ? 0 : 7 + (value | 0)] as number;
+    else if (!Number.isNaN(value)) into[pixel[n] as number] = words[7] as number;
+    else isMasked = true;
   }
-  return masked;
+  return isMasked;
 }

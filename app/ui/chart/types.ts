@@ -27,6 +27,8 @@ export interface ChartShading {
 export interface ChartContours {
   readonly values: Float32Array;
   readonly interval: number;
+  /** For the key; the shading's units where it is left out. */
+  readonly units?: string;
   /** Each how many lines one is bold and labelled. */
   readonly boldEach: number;
 }
@@ -63,7 +65,12 @@ export interface ChartProps {
   /** The last picture stays, at 40 %, while numbers are on their way. */
   readonly isWaiting?: boolean;
   onCursor(lat: number, lon: number): void;
+  /** The hemisphere was pulled round with Shift held. */
   onTurn?(turn: number): void;
+  /** The belt was pulled along with Shift held. */
+  onCut?(cut: number): void;
+  /** Where the pointer is; null once it has left the map. */
+  onHover?(place: { readonly lat: number; readonly lon: number } | null): void;
 }
 
 export interface DialHand {
@@ -85,6 +92,8 @@ export interface WaveDialsProps {
   readonly theme: ThemeName;
   /** Longitude at the dial's foot, as the chart's. */
   readonly turn: number;
+  /** East runs as on that hemisphere's chart; north unless given. */
+  readonly hemisphere?: "north" | "south";
   readonly cursorLon: number;
   /** Wavenumber of the chosen wave. */
   readonly chosen: number | null;

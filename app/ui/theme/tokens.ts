@@ -31,6 +31,8 @@ export interface Tokens {
   /** Diverging ramp from zero outward, seven bands a side. */
   readonly below: readonly string[];
   readonly above: readonly string[];
+  /** Sequential ramp, from few to many; zero is the sheet. */
+  readonly sequential: readonly string[];
 }
 
 /** `#RRGGBB` with an opacity. */
@@ -42,7 +44,9 @@ export function withOpacity(hex: string, opacity: number): string {
 const LIGHT_INK = "#15242B";
 const NIGHT_INK = "#E8EDE7";
 
-// Ramps: vik (light) and berlin (night), F. Crameri, Scientific colour maps, doi:10.5281/zenodo.1243862, MIT licence; ends cut off.
+// Waves: long ones cold, short ones warm, each of one hue in both themes. Found by search for the largest smallest difference
+// (CIEDE2000) of any pair, as seen normally and by deuteranopes, protanopes and tritanopes, with 3:1 on the sheet or more.
+// Ramps: vik (light), berlin (night) and acton (sequential; the night's first stop is our own), F. Crameri, Scientific colour maps, doi:10.5281/zenodo.1243862, MIT licence; ends cut off.
 export const THEMES: Readonly<Record<ThemeName, Tokens>> = {
   light: {
     desk: "#DDE3DE",
@@ -70,6 +74,18 @@ export const THEMES: Readonly<Record<ThemeName, Tokens>> = {
     shorter: "#7C8A87",
     below: ["#BDD7E3", "#9AC1D5", "#76ABC6", "#5295B6", "#317EA7", "#156898", "#05548B"],
     above: ["#E7C6B3", "#DEB095", "#D59A79", "#CC865E", "#C37244", "#BA5E2A", "#A94512"],
+    sequential: [
+      "#EEE3F4",
+      "#E8CDE3",
+      "#E2B2CF",
+      "#DA96B8",
+      "#D07AA0",
+      "#B86891",
+      "#99658F",
+      "#7D638E",
+      "#635D88",
+      "#504976",
+    ],
   },
   night: {
     desk: "#0A1115",
@@ -93,11 +109,22 @@ export const THEMES: Readonly<Record<ThemeName, Tokens>> = {
     contour: withOpacity(NIGHT_INK, 0.62),
     contourBold: withOpacity(NIGHT_INK, 0.9),
     halo: withOpacity("#0A1115", 0.8),
-    // Wave 4 is calmer than it was drawn first: neon beside the others.
-    waves: ["#5773F7", "#B7BCFF", "#58B2A6", "#6FE8A4", "#777B00", "#FF9A47", "#F65275", "#966192"],
+    waves: ["#6A80FB", "#CCC6FF", "#04B1AB", "#AFEBBD", "#8A8103", "#FDA65A", "#D85D78", "#865A95"],
     shorter: "#7F8F92",
     below: ["#153544", "#1C475C", "#235B75", "#2B6F8F", "#3483AA", "#4496C5", "#5DA4DC"],
     above: ["#401201", "#521804", "#692510", "#833823", "#9B4E3B", "#B26455", "#CA7A70"],
+    sequential: [
+      "#2A2140",
+      "#3C2B5C",
+      "#4D4572",
+      "#605B87",
+      "#7C638D",
+      "#99658F",
+      "#BA6992",
+      "#D27DA3",
+      "#DB9BBC",
+      "#EAD4E9",
+    ],
   },
 };
 
