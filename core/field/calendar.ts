@@ -98,7 +98,7 @@ function dayNumber(year: number, month: number, day: number, calendar: Calendar)
 /**
  * Days since 1970-01-01 00 UTC, counted in the date's own calendar.
  *
- * @throws MetadataError for a day that the calendar does not have.
+ * @throws MetadataError for a day that the calendar does not have, or a time that the day does not have.
  */
 export function daysOf(
   date: Partial<CalendarDate> & Pick<CalendarDate, "year" | "month" | "day">,
@@ -109,11 +109,27 @@ export function daysOf(
   const whole = [year, month, day].every(Number.isInteger);
   if (!whole || month < 1 || month > 12 || day < 1 || day > daysInMonth(year, month, calendar) || inReform)
     throw new DataError("MetadataError", `${year}-${month}-${day} is not a day of the ${calendar} calendar.`);
+  const isTime = hour >= 0 && hour < 24 && minute >= 0 && minute < 60 && second >= 0 && second < 60;
+  if (!isTime) throw new DataError("MetadataError", `${hour}:${minute}:${second} is not a time of day.`);
   return dayNumber(year, month, day, calendar) + (hour + (minute + second / 60) / 60) / 24;
 }
 
-/** The date of a day number, to the nearest second. */
+/** Days from 1970 that a year of six digits can hold, in the shortest calendar. */
+const MOST_DAYS = 360 * 990_000;
+
+/** True for a day number that has a date here: finite, and less than about a million years from 1970. */
+export function isDateable(days: number): boolean {
+  return Math.abs(days) <= MOST_DAYS;
+}
+
+/**
+ * The date of a day number, to the nearest second.
+ *
+ * @throws MetadataError for a day number that has none: NaN, or a million years away.
+ */
 export function dateOf(days: number, calendar: Calendar): CalendarDate {
+  if (!isDateable(days))
+    throw new DataError("MetadataError", `${days} days from 1970 is no date of the ${calendar} calendar.`);
   const seconds = Math.round(days * 86_400);
   const whole = Math.floor(seconds / 86_400);
   const rest = seconds - whole * 86_400;

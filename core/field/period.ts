@@ -22,7 +22,7 @@ function axisValue(end: string | number, steps: StepAxis, which: string): number
 /**
  * The steps of a period, both ends included; an end that is a day without an hour includes the whole day.
  *
- * @throws RecipeError if the period cannot be read, runs backwards, or holds no step; MetadataError for no date.
+ * @throws RecipeError if the period cannot be read, runs backwards, holds no step, or is not one stretch; MetadataError for no date.
  */
 export function stepsOfPeriod(
   steps: StepAxis,
@@ -34,12 +34,13 @@ export function stepsOfPeriod(
   const isTime = steps.kind === "time";
   const from = axisValue(period[0], steps, "the first");
   const to = axisValue(period[1], steps, "the last");
-  if (from > to)
-    throw new DataError("RecipeError", `period: ${period[0]} comes after ${period[1]}; the earlier comes first`);
   const isWholeDay = isTime && typeof period[1] === "string" && DAY_ONLY.test(period[1]);
+  if (from > to && !(isWholeDay && from < to + 1))
+    throw new DataError("RecipeError", `period: ${period[0]} comes after ${period[1]}; the earlier comes first`);
   const slack = isTime ? HALF_SECOND : 0;
   const first = steps.values.findIndex((value) => value >= from - slack);
-  const last = steps.values.findLastIndex((value) => (isWholeDay ? value < to + 1 - slack : value <= to + slack));
+  const isBefore = (value: number) => (isWholeDay ? value < to + 1 - slack : value <= to + slack);
+  const last = steps.values.findLastIndex(isBefore);
   if (first < 0 || last < first) {
     const ends = `${stepText(steps, 0)} to ${stepText(steps, n - 1)}`;
     throw new DataError(
@@ -47,5 +48,12 @@ export function stepsOfPeriod(
       `period: no step lies from ${period[0]} to ${period[1]}; the record runs ${ends}`,
     );
   }
+  // Times increase; the numbers of a record need not, and then one range of steps is not the period.
+  const between = steps.values.subarray(first, last + 1);
+  if (!between.every((value) => value >= from - slack && isBefore(value)))
+    throw new DataError(
+      "RecipeError",
+      `period: the numbers of "${steps.name}" are not in order, so ${period[0]} to ${period[1]} is not one stretch of the record; sort the file along it`,
+    );
   return [first, last + 1];
 }

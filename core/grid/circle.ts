@@ -17,7 +17,8 @@ export function closesCircle(lon: Float64Array): boolean {
   const n = lon.length;
   if (n < 3 || !isEven(lon)) return false;
   const step = ((lon[n - 1] as number) - (lon[0] as number)) / (n - 1);
-  return Math.abs(step * n - 360) <= LON_TOLERANCE * n;
+  // A quarter of a column at most: on a fine grid the errors allowed to each step could add up to a missing column.
+  return Math.abs(step * n - 360) <= Math.min(LON_TOLERANCE * n, step / 4);
 }
 
 /** @throws GridError, with the reason and what to do, for a grid that has no zonal waves. */

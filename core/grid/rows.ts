@@ -45,11 +45,12 @@ export function nearestRow(lat: Float64Array, latitude: number): number {
 /** The column nearest to a longitude, round the circle; of two equally near, the western. */
 export function nearestColumn(lon: Float64Array, longitude: number): number {
   let best = 0;
-  let least = Number.POSITIVE_INFINITY;
+  let nearest = Number.POSITIVE_INFINITY;
   for (let i = 0; i < lon.length; i++) {
-    const away = Math.abs((((((lon[i] as number) - longitude + 180) % 360) + 360) % 360) - 180);
-    if (away < least - LAT_TOLERANCE) {
-      least = away;
+    const east = (((((lon[i] as number) - longitude + 180) % 360) + 360) % 360) - 180;
+    const gain = Math.abs(nearest) - Math.abs(east);
+    if (gain > LAT_TOLERANCE || (gain >= -LAT_TOLERANCE && east < nearest)) {
+      nearest = east;
       best = i;
     }
   }

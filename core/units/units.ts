@@ -90,7 +90,9 @@ function plain(spelling: string): string {
     .trim()
     .toLowerCase()
     .replace(/[\s_]+/g, (gap) => (gap.includes("_") ? "_" : " "))
-    .replace(/⁻¹/g, "-1");
+    .replace(/⁻/g, "-")
+    .replace(/¹/g, "1")
+    .replace(/²/g, "2");
 }
 
 /** How a unit of this kind is converted, or null if the spelling is not one of the table's. */

@@ -10,11 +10,16 @@ import { recognition } from "./quantity-of.ts";
 const ABOUT = ["title", "institution", "source", "comment", "references", "history"];
 
 /** Variables that only serve others: coordinates, their bounds, grid mappings, text. */
-function servesOthers(variable: StoredVariable, store: VariableStore): boolean {
-  if (variable.type === "char" || variable.shape.length < 2) return true;
-  return store.variables.some((other) =>
-    ["bounds", "climatology", "grid_mapping"].some((name) => textOf(other.attributes, name) === variable.name),
+function servesOthers(variable: StoredVariable, served: ReadonlySet<string>): boolean {
+  return variable.type === "char" || variable.shape.length < 2 || served.has(variable.name);
+}
+
+/** Names that variables refer to as their bounds or grid mapping. */
+function servingNames(store: VariableStore): ReadonlySet<string> {
+  const names = store.variables.flatMap(({ attributes }) =>
+    ["bounds", "climatology", "grid_mapping"].map((name) => textOf(attributes, name) ?? ""),
   );
+  return new Set(names);
 }
 
 async function readable(
@@ -59,8 +64,9 @@ export async function openCfFile(
   const fields = new Map<string, ReadableField>();
   const leftOut: LeftOut[] = [];
   const notes = new Set(store.notes);
+  const served = servingNames(store);
   for (const variable of store.variables) {
-    if (servesOthers(variable, store)) continue;
+    if (servesOthers(variable, served)) continue;
     const correction = corrections.find((said) => said.file === store.name && said.variable === variable.name);
     try {
       const field = await readable(store, variable, shelf, correction);

@@ -30,13 +30,20 @@ export function decodingOf(variable: StoredVariable): Decoding {
   const fallback = DEFAULT_FILL[type];
   const fill = own.length > 0 || fallback === undefined ? own : [fallback];
   const unsigned = textOf(attributes, "_Unsigned")?.toLowerCase() === "true" && type in BITS;
+  const wrap = unsigned ? 2 ** BITS[type as keyof typeof BITS] : 0;
   const range = numbersOf(attributes, "valid_range");
+  // Attributes may be written wider than the data (1e20 as a double beside floats, 255 beside unsigned bytes) or as signed as they are.
+  const stored = (value: number): number =>
+    type === "float32" ? Math.fround(value) : wrap !== 0 && value >= wrap / 2 ? value - wrap : value;
+  const read = (value: number): number => (wrap !== 0 && value < 0 && Number.isFinite(value) ? value + wrap : value);
   return {
     // A fill value of NaN on whole numbers never matches, and on real ones NaN is missing anyway.
-    missing: [...fill, ...numbersOf(attributes, "missing_value")].filter((value) => !Number.isNaN(value)),
-    least: range[0] ?? numbersOf(attributes, "valid_min")[0] ?? Number.NEGATIVE_INFINITY,
-    most: range[1] ?? numbersOf(attributes, "valid_max")[0] ?? Number.POSITIVE_INFINITY,
-    wrap: unsigned ? 2 ** BITS[type as keyof typeof BITS] : 0,
+    missing: [...new Set([...fill, ...numbersOf(attributes, "missing_value")].map(stored))].filter(
+      (value) => !Number.isNaN(value),
+    ),
+    least: read(range[0] ?? numbersOf(attributes, "valid_min")[0] ?? Number.NEGATIVE_INFINITY),
+    most: read(range[1] ?? numbersOf(attributes, "valid_max")[0] ?? Number.POSITIVE_INFINITY),
+    wrap,
     scale: numbersOf(attributes, "scale_factor")[0] ?? 1,
     offset: numbersOf(attributes, "add_offset")[0] ?? 0,
   };

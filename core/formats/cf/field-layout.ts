@@ -24,15 +24,16 @@ export interface FieldLayout {
 
 /** Axes shared by the variables of a file are read once. */
 export class AxisShelf {
-  readonly #store: VariableStore;
+  readonly #coordinates = new Map<string, StoredVariable>();
   readonly #held = new Map<string, Promise<unknown>>();
   constructor(store: VariableStore) {
-    this.#store = store;
+    for (const variable of store.variables) {
+      const { name, dims } = variable;
+      if (dims.length === 1 && dims[0] === name) this.#coordinates.set(name, variable);
+    }
   }
   coordinate(name: string): StoredVariable | undefined {
-    return this.#store.variables.find(
-      (variable) => variable.name === name && variable.dims.length === 1 && variable.dims[0] === name,
-    );
+    return this.#coordinates.get(name);
   }
   once<T>(key: string, read: () => Promise<T>): Promise<T> {
     let held = this.#held.get(key);
@@ -101,7 +102,7 @@ export async function fieldLayout(
   };
   const latitude = axis(latDim);
   const longitude = axis(lonDim);
-  if (variable.shape[latDim] === 0 || variable.shape[lonDim] === 0) throw new DataError("ShapeError", "it is empty");
+  if ([latDim, lonDim, levelDim].some((d) => variable.shape[d] === 0)) throw new DataError("ShapeError", "it is empty");
   const rows = orderedRows(
     await shelf.once(`lat ${latitude.name}`, () => axisValues(store, latitude)),
     `${store.name}, ${latitude.name}`,

@@ -28,10 +28,12 @@ function runsOfIndices(indices: readonly number[]): { from: number; count: numbe
 function checkRequest(field: ReadableField, request: SlabRequest, nTime: number, nLevel: number, nLat: number): void {
   const range = ([from, to]: readonly [number, number], size: number) =>
     Number.isInteger(from) && Number.isInteger(to) && from >= 0 && from < to && to <= size;
-  const levels = request.levels ?? [];
+  // A field without levels has nothing to choose from; a list for it is ignored.
+  const levels = field.description.levels === null ? [] : (request.levels ?? [0]);
   if (
     !range(request.times, nTime) ||
     !range(request.rows ?? [0, nLat], nLat) ||
+    (field.description.levels !== null && levels.length === 0) ||
     levels.some((level) => !(Number.isInteger(level) && level >= 0 && level < nLevel))
   )
     throw new DataError(
@@ -105,6 +107,10 @@ export async function fieldSlab(store: VariableStore, field: ReadableField, requ
           const row = layout.rows.step === 1 ? r : nLat - 1 - r;
           let from = t * timeStride + l * levelStride + row * rowStride + columnStart;
           let into = ((t * nLevel + run.into + l) * nLat + r) * nLon;
+          if (columnStep === 1) {
+            out.set(stored.subarray(from, from + nLon), into);
+            continue;
+          }
           for (let c = 0; c < nLon; c++, from += columnStep) out[into++] = stored[from] as number;
         }
       }

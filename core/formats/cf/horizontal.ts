@@ -32,7 +32,11 @@ export function orderedColumns(stored: Float64Array, where: string): OrderedAxis
   const n = stored.length;
   // Most steps decide the direction: one step may be the jump at the date line.
   let rising = 0;
-  for (let i = 1; i < n; i++) rising += (stored[i] as number) > (stored[i - 1] as number) ? 1 : -1;
+  for (let i = 1; i < n; i++) {
+    const step = (stored[i] as number) - (stored[i - 1] as number);
+    // A step over more than half the circle is that jump, and runs the other way; of two columns alone a rise is one.
+    rising += step < -180 || (step > 0 && (step <= 180 || n === 2)) ? 1 : -1;
+  }
   const falls = rising < 0;
   const values = falls ? stored.slice().reverse() : stored.slice();
   let turns = 0;
@@ -48,7 +52,8 @@ export function orderedColumns(stored: Float64Array, where: string): OrderedAxis
   }
   const first = values[0] as number;
   if (!Number.isFinite(first)) throw new DataError("GridError", `${where}: the first longitude is ${first}.`);
-  const shift = first < -180 ? 360 : first >= 360 ? -360 : 0;
+  const shift =
+    first < -180 ? 360 * Math.ceil((-180 - first) / 360) : first >= 360 ? -360 * Math.floor(first / 360) : 0;
   if (shift !== 0) for (let i = 0; i < n; i++) values[i] = (values[i] as number) + shift;
   const span = (values[n - 1] as number) - (values[0] as number);
   const repeats = n > 2 && Math.abs(span - 360) <= 2 * LON_TOLERANCE;

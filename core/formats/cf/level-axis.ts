@@ -19,6 +19,12 @@ export async function levelAxis(
       `its levels (${name}) are in ${units === "" ? "no stated units" : `"${units}"`}, not in a pressure (${acceptedSpellings("pressure")})`,
     );
   const values = await axisValues(store, variable);
+  const bad = values.findIndex((value) => !(value > 0 && Number.isFinite(value)));
+  if (bad >= 0)
+    throw new DataError(
+      "MetadataError",
+      `level ${bad + 1} of its ${values.length} (${name}) is ${values[bad]}, no pressure`,
+    );
   return values.map((value) => Math.round(value * found.factor * 1e9) / 1e9);
 }
 
@@ -42,7 +48,10 @@ export async function statedLevel(store: VariableStore, variable: StoredVariable
   const words = `${longName(variable)} ${textOf(variable.attributes, "level_desc") ?? ""} ${textOf(variable.attributes, "level") ?? ""}`;
   const inWords = /(\d{1,4}(?:\.\d+)?)[\s-]*(hPa|mb|mbar|millibars?)\b/i.exec(words);
   if (inWords !== null) return Float64Array.of(Number(inWords[1]));
-  const inName = /^[a-z]+_?(\d{2,4})(?:hpa|mb)?$/i.exec(variable.name);
+  // u10 and v100 are winds 10 and 100 metres above the ground where the words say so, and u10 is that without words too.
+  if (/\d\s*-?\s*(m|meters?|metres?)\b/i.test(words)) return null;
+  const inName = /^[a-z]+_?(\d{2,4})(hpa|mb)?$/i.exec(variable.name);
   const level = Number(inName?.[1]);
-  return level >= 10 && level <= 1000 ? Float64Array.of(level) : null;
+  const least = inName?.[2] === undefined ? 20 : 10;
+  return level >= least && level <= 1000 ? Float64Array.of(level) : null;
 }

@@ -1,6 +1,6 @@
 import { DataError } from "../../errors.ts";
 import type { StepAxis } from "../../field/axes.ts";
-import { calendarNamed } from "../../field/calendar.ts";
+import { calendarNamed, isDateable } from "../../field/calendar.ts";
 import { timeUnits } from "../../field/time-units.ts";
 import type { StoredVariable, VariableStore } from "../variable-store.ts";
 import { textOf } from "./attributes.ts";
@@ -25,6 +25,11 @@ export async function timeAxis(store: VariableStore, variable: StoredVariable): 
     values[i] = origin + (values[i] as number) * daysPerUnit;
     if (!Number.isFinite(values[i]))
       throw new DataError("MetadataError", `${where}: time ${i + 1} of ${values.length} is missing.`);
+    if (!isDateable(values[i] as number))
+      throw new DataError(
+        "MetadataError",
+        `${where}: time ${i + 1} of ${values.length} is ${values[i]} days from 1970, beyond any calendar. Correct its value or its units.`,
+      );
     if (i > 0 && !((values[i] as number) > (values[i - 1] as number)))
       throw new DataError(
         "MetadataError",
@@ -34,6 +39,9 @@ export async function timeAxis(store: VariableStore, variable: StoredVariable): 
   return { kind: "time", name: variable.name, values, calendar };
 }
 
+/** Steps without numbers of their own take memory for each: only a damaged header promises more. */
+const MOST_UNNUMBERED_STEPS = 1_000_000;
+
 /** A record that is no time: its numbers, or 1, 2, 3 … where it has none of its own. */
 export async function recordAxis(
   store: VariableStore,
@@ -42,6 +50,11 @@ export async function recordAxis(
   variable: StoredVariable | undefined,
 ): Promise<StepAxis> {
   const usable = variable !== undefined && variable.type !== "char" && variable.shape.length === 1;
+  if (!usable && length > MOST_UNNUMBERED_STEPS)
+    throw new DataError(
+      "FormatError",
+      `its axis ${name} has ${length} steps without values of their own; the file is damaged. Fetch it again.`,
+    );
   const values = usable ? await axisValues(store, variable) : Float64Array.from({ length }, (_, i) => i + 1);
   return { kind: "record", name, values, calendar: "standard" };
 }

@@ -107,13 +107,19 @@ export async function openNetcdfClassic(source: ByteSource): Promise<VariableSto
       strides[d] = d === 0 && variable.isRecord ? header.recordStride : step;
       step *= shape[d] as number;
     }
-    const out = new Float64Array(count.reduce((product, n) => product * n, 1));
+    const values = count.reduce((product, n) => product * n, 1);
+    // A damaged header can promise any size: what the file cannot hold is refused before memory is taken for it.
+    const end = count.reduce(
+      (sum, n, d) => sum + ((start[d] as number) + n - 1) * (strides[d] as number),
+      variable.begin + bytes,
+    );
+    if (values > 0 && !(end <= source.size))
+      throw new DataError(
+        "FormatError",
+        `${source.name}, ${name}: the file ends at byte ${source.size}, inside this variable. It is cut short; fetch it again.`,
+      );
+    const out = new Float64Array(values);
     for (const batch of batchesOf(runsOf(variable.begin, shape, start, count, strides, bytes), bytes)) {
-      if (batch.offset + batch.length > source.size)
-        throw new DataError(
-          "FormatError",
-          `${source.name}, ${name}: the file ends at byte ${source.size}, inside this variable. It is cut short; fetch it again.`,
-        );
       const raw = await source.read(batch.offset, batch.length);
       for (const run of batch.runs) {
         const from = run.offset - batch.offset;

@@ -1,5 +1,7 @@
 import { DataError } from "../../errors.ts";
 
+const STREAMING = 0xffffffff;
+
 /** Thrown when the bytes at hand end before the header does; the caller fetches more. */
 export class PrefixEnds extends Error {
   readonly needed: number;
@@ -52,6 +54,16 @@ export class HeaderBytes {
     if (value > Number.MAX_SAFE_INTEGER) throw this.wrong(`${what} is impossibly large`);
     this.offset += 8;
     return value;
+  }
+
+  /** The number of records; null while a file is being streamed (all bits set). */
+  recordCount(wide: boolean): number | null {
+    this.need(wide ? 8 : 4);
+    const first = this.#view.getUint32(this.offset);
+    const isStreaming = first === STREAMING && (!wide || this.#view.getUint32(this.offset + 4) === STREAMING);
+    if (!isStreaming) return wide ? this.uint64("the number of records") : this.uint32();
+    this.offset += wide ? 8 : 4;
+    return null;
   }
 
   /** Number of items of at least `itemBytes` each, which must fit into what is left of the file. */

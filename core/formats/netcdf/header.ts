@@ -6,7 +6,6 @@ import { CLASSIC_TYPES, type ClassicHeader, type ClassicVariable } from "./types
 const TAG_DIMENSION = 10;
 const TAG_VARIABLE = 11;
 const TAG_ATTRIBUTE = 12;
-const STREAMING = 0xffffffff;
 /** NC_MAX_DIMS and the like are not part of the format; no sane variable has more dimensions than this. */
 const MOST_DIMS_OF_A_VARIABLE = 1024;
 
@@ -81,8 +80,7 @@ export function classicHeader(prefix: Uint8Array, fileName: string, fileSize: nu
     return found;
   };
 
-  const stated = count("the number of records");
-  const records = !wide && stated === STREAMING ? null : stated;
+  const records = from.recordCount(wide);
   const dimensions: { name: string; length: number }[] = [];
   const nDimensions = list(TAG_DIMENSION, 2 * countBytes, "dimensions");
   for (let i = 0; i < nDimensions; i++) dimensions.push({ name: name(), length: count("a dimension's length") });
@@ -106,7 +104,9 @@ export function classicHeader(prefix: Uint8Array, fileName: string, fileSize: nu
     const begin = version === 1 ? from.uint32() : from.uint64("a variable's place");
     const isRecord = nDims > 0 && dimIds[0] === recordDimension;
     const values = dimIds.slice(isRecord ? 1 : 0).reduce((product, id) => product * (dimensions[id]?.length ?? 0), 1);
-    if (values * bytes > Number.MAX_SAFE_INTEGER) throw from.wrong(`variable ${variableName} is impossibly large`, at);
+    // Turned round so that NaN, which is 0 · ∞, is caught as well.
+    if (!(values * bytes <= Number.MAX_SAFE_INTEGER))
+      throw from.wrong(`variable ${variableName} is impossibly large`, at);
     variables.push({
       name: variableName,
       type,
