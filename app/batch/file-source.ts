@@ -1,3 +1,4 @@
+import { readSync } from "node:fs";
 import { type FileHandle, open } from "node:fs/promises";
 import { basename } from "node:path";
 import { DataError } from "../../core/errors.ts";
@@ -31,6 +32,11 @@ export async function openFileSource(path: string): Promise<FileSource> {
     throw new DataError("NotFoundError", `${path}: this is a folder or a device; name a file.`);
   }
   const name = basename(path);
+  const shorter = (at: number): DataError =>
+    new DataError(
+      "FormatError",
+      `${name}: it became shorter while it was read (byte ${at}). Open it again once it is whole.`,
+    );
   return {
     name,
     size: info.size,
@@ -40,11 +46,18 @@ export async function openFileSource(path: string): Promise<FileSource> {
       let filled = 0;
       while (filled < length) {
         const { bytesRead } = await handle.read(bytes, filled, length - filled, offset + filled);
-        if (bytesRead === 0)
-          throw new DataError(
-            "FormatError",
-            `${name}: it became shorter while it was read (byte ${offset + filled}). Open it again once it is whole.`,
-          );
+        if (bytesRead === 0) throw shorter(offset + filled);
+        filled += bytesRead;
+      }
+      return bytes;
+    },
+    readNow(offset, length) {
+      requireInside(name, info.size, offset, length);
+      const bytes = new Uint8Array(length);
+      let filled = 0;
+      while (filled < length) {
+        const bytesRead = readSync(handle.fd, bytes, filled, length - filled, offset + filled);
+        if (bytesRead === 0) throw shorter(offset + filled);
         filled += bytesRead;
       }
       return bytes;

@@ -4,6 +4,12 @@ import { requireInside } from "../../core/formats/memory-source.ts";
 import type { SourceDescription } from "./desk.ts";
 
 function fileSource(file: File): ByteSource {
+  const gone = (error: unknown): DataError =>
+    new DataError(
+      "FormatError",
+      `${file.name} can no longer be read: it was changed, moved or taken away since it was opened. Open it again.`,
+      error,
+    );
   return {
     name: file.name,
     size: file.size,
@@ -12,17 +18,38 @@ function fileSource(file: File): ByteSource {
       try {
         return new Uint8Array(await file.slice(offset, offset + length).arrayBuffer());
       } catch (error) {
-        throw new DataError(
-          "FormatError",
-          `${file.name} can no longer be read: it was changed, moved or taken away since it was opened. Open it again.`,
-          error,
-        );
+        throw gone(error);
+      }
+    },
+    readNow(offset, length) {
+      requireInside(file.name, file.size, offset, length);
+      try {
+        return new Uint8Array(new FileReaderSync().readAsArrayBuffer(file.slice(offset, offset + length)));
+      } catch (error) {
+        throw gone(error);
       }
     },
   };
 }
 
 function rangeSource(name: string, size: number, url: string): ByteSource {
+  const unreachable = (error: unknown): DataError =>
+    new DataError(
+      "FormatError",
+      `${name} cannot be reached: the program that serves this window has stopped. Start Isohypse again; the case is kept.`,
+      error,
+    );
+  const refused = (words: string): DataError =>
+    new DataError("FormatError", `${name} can no longer be read: ${words.trim()} Open it again.`);
+  const range = (offset: number, length: number): string => `bytes=${offset}-${offset + length - 1}`;
+  const whole = (bytes: Uint8Array<ArrayBuffer>, offset: number, length: number): Uint8Array<ArrayBuffer> => {
+    if (bytes.length !== length)
+      throw new DataError(
+        "FormatError",
+        `${name}: ${bytes.length} of ${length} bytes arrived from byte ${offset}: it became shorter. Open it again once it is whole.`,
+      );
+    return bytes;
+  };
   return {
     name,
     size,
@@ -31,26 +58,28 @@ function rangeSource(name: string, size: number, url: string): ByteSource {
       if (length === 0) return new Uint8Array(0);
       let answer: Response;
       try {
-        answer = await fetch(url, { headers: { range: `bytes=${offset}-${offset + length - 1}` } });
+        answer = await fetch(url, { headers: { range: range(offset, length) } });
       } catch (error) {
-        throw new DataError(
-          "FormatError",
-          `${name} cannot be reached: the program that serves this window has stopped. Start Isohypse again; the case is kept.`,
-          error,
-        );
+        throw unreachable(error);
       }
-      if (answer.status !== 206)
-        throw new DataError(
-          "FormatError",
-          `${name} can no longer be read: ${(await answer.text()).trim()} Open it again.`,
-        );
-      const bytes = new Uint8Array(await answer.arrayBuffer());
-      if (bytes.length !== length)
-        throw new DataError(
-          "FormatError",
-          `${name}: ${bytes.length} of ${length} bytes arrived from byte ${offset}: it became shorter. Open it again once it is whole.`,
-        );
-      return bytes;
+      if (answer.status !== 206) throw refused(await answer.text());
+      return whole(new Uint8Array(await answer.arrayBuffer()), offset, length);
+    },
+    readNow(offset, length) {
+      requireInside(name, size, offset, length);
+      if (length === 0) return new Uint8Array(0);
+      const request = new XMLHttpRequest();
+      request.open("GET", url, false);
+      request.responseType = "arraybuffer";
+      request.setRequestHeader("range", range(offset, length));
+      try {
+        request.send();
+      } catch (error) {
+        throw unreachable(error);
+      }
+      const answer = new Uint8Array(request.response as ArrayBuffer);
+      if (request.status !== 206) throw refused(new TextDecoder().decode(answer));
+      return whole(answer, offset, length);
     },
   };
 }

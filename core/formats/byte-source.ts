@@ -10,4 +10,10 @@ export interface ByteSource {
    * @throws FormatError if the range is not inside the source, or fewer bytes arrive.
    */
   read(offset: number, length: number): Promise<Uint8Array<ArrayBuffer>>;
+  /**
+   * The same at once, for libraries that cannot wait. In a window only workers have it.
+   *
+   * @throws FormatError as `read` does.
+   */
+  readNow(offset: number, length: number): Uint8Array<ArrayBuffer>;
 }

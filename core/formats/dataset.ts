@@ -19,6 +19,10 @@ export interface FieldDescription {
   readonly grid: Grid;
   readonly steps: StepAxis;
   readonly levels: Levels;
+  /** Numbers of an ensemble's members as the file gives them; null on a field without members. */
+  readonly members: readonly number[] | null;
+  /** Start of the forecast that all steps belong to, days as `steps` counts them; null for analyses and records. */
+  readonly reference: number | null;
 }
 
 /** A variable that is no usable field, and why. */
@@ -55,6 +59,8 @@ export interface SlabRequest {
   readonly times: IndexRange;
   /** Indices into `levels`; ignored on a field without levels. */
   readonly levels?: readonly number[];
+  /** Index into `members`; absent = the first. */
+  readonly member?: number;
   /** Rows south → north. */
   readonly rows?: IndexRange;
 }

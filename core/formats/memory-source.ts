@@ -12,12 +12,9 @@ export function requireInside(name: string, size: number, offset: number, length
 
 /** Bytes that are in memory already. */
 export function memorySource(name: string, bytes: Uint8Array): ByteSource {
-  return {
-    name,
-    size: bytes.length,
-    async read(offset, length) {
-      requireInside(name, bytes.length, offset, length);
-      return bytes.slice(offset, offset + length) as Uint8Array<ArrayBuffer>;
-    },
+  const readNow = (offset: number, length: number): Uint8Array<ArrayBuffer> => {
+    requireInside(name, bytes.length, offset, length);
+    return bytes.slice(offset, offset + length) as Uint8Array<ArrayBuffer>;
   };
+  return { name, size: bytes.length, read: async (offset, length) => readNow(offset, length), readNow };
 }

@@ -45,6 +45,8 @@ async function readable(
     grid: layout.grid,
     steps: layout.steps,
     levels: layout.levels,
+    members: null,
+    reference: null,
   };
   return {
     description,

@@ -161,6 +161,8 @@ export function fakeContents(file: string, fields: readonly FakeField[]): FileCo
         quantity,
         why: "made up",
         unitsInFile: "m",
+        members: null,
+        reference: null,
         units: "gpm",
         grid,
         steps,

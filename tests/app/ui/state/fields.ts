@@ -34,6 +34,8 @@ export function field(change: Partial<FieldDescription> = {}): FieldDescription 
     quantity: "geopotential_height",
     why: "standard name geopotential_height",
     unitsInFile: "m",
+    members: null,
+    reference: null,
     units: "gpm",
     grid: {
       lat: Float64Array.from({ length: 37 }, (_, i) => -90 + 5 * i),
