@@ -6,7 +6,7 @@ const ROOT = new URL("..", import.meta.url).pathname;
 
 /** Core's layers; each may import from those before it and from itself. */
 const CORE_LAYERS = [
-  ["errors.ts", "constants.ts", "units"],
+  ["errors.ts", "constants.ts", "units", "wasm"],
   ["field", "grid"],
   ["formats"],
   ["transforms"],

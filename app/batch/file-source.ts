@@ -40,9 +40,9 @@ export async function openFileSource(path: string): Promise<FileSource> {
   return {
     name,
     size: info.size,
-    async read(offset, length) {
+    async read(offset, length, into) {
       requireInside(name, info.size, offset, length);
-      const bytes = new Uint8Array(length);
+      const bytes = into !== undefined && into.length >= length ? into.subarray(0, length) : new Uint8Array(length);
       let filled = 0;
       while (filled < length) {
         const { bytesRead } = await handle.read(bytes, filled, length - filled, offset + filled);

@@ -19,7 +19,7 @@ async function writeAll(file: FileHandle, pieces: Iterable<Uint8Array | string>)
 export async function writeResult(result: Result, folder: string): Promise<WrittenResult> {
   const { table, note } = resultTable(result);
   const files = await wholeFiles(async (set) => {
-    await set.write(join(folder, `${result.id}.nc`), (file) => writeAll(file, resultBytes(result)));
+    await set.write(join(folder, `${result.id}.nc`), (file) => writeAll(file, resultBytes(result, true)));
     if (table !== null) await set.write(join(folder, `${result.id}.csv`), (file) => writeAll(file, tableText(table)));
   });
   return { files, notes: note === null ? [] : [note] };

@@ -11,6 +11,11 @@ export function resultArray(size: number): Float64Array<ArrayBuffer> | Float32Ar
   return isSingle(size) ? new Float32Array(size) : new Float64Array(size);
 }
 
+/** An array for `size` numbers of a result that has `whole` of them. */
+export function partArray(size: number, whole: number): Float64Array<ArrayBuffer> | Float32Array<ArrayBuffer> {
+  return isSingle(whole) ? new Float32Array(size) : new Float64Array(size);
+}
+
 /** What a result that is float32 says of it. */
 export const SINGLE_NOTE =
   "Numbers of every row and step are kept to seven digits (float32), for there are over a million.";

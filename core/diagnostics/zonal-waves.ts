@@ -5,7 +5,7 @@ import { interferenceVariables } from "./waves/interference.ts";
 import { WAVE_OPTIONS } from "./waves/option-specs.ts";
 import { WAVE_OUTPUTS } from "./waves/output-specs.ts";
 import { reconstructionVariable } from "./waves/reconstruction.ts";
-import { joinedParts } from "./waves/series-join.ts";
+import { joinedParts, pieces } from "./waves/series-join.ts";
 import { amplitudeVariables, incoherentVariables } from "./waves/wave-amplitudes.ts";
 import { planRows, waveChunk } from "./waves/wave-chunk.ts";
 import { shareVariable } from "./waves/wave-extras.ts";
@@ -26,23 +26,24 @@ function finish(parts: readonly ChunkPart[], series: Series, options: OptionValu
   const frame = new WaveFrame(series, choice);
   const notes: string[] = [];
   const coordinates: Coordinate[] = frame.coordinates();
-  const c = joinedParts(parts, "c");
-  const variance = joinedParts(parts, "variance");
   const incoherent = choice.band !== null && !choice.coherent;
   const variables: ResultVariable[] = [];
   if (incoherent) {
-    variables.push(...incoherentVariables(frame, c, variance));
+    variables.push(...incoherentVariables(frame, joinedParts(parts, "c"), joinedParts(parts, "variance")));
     notes.push(
       "The band is an incoherent mean: rows are averaged after their amplitudes are taken, so there is no ridge, phase or speed.",
     );
   } else {
-    variables.push(...amplitudeVariables(frame, c, variance), ...speedVariables(frame, c, notes));
-    if (choice.driftDays > 0) variables.push(...driftVariables(frame, c, variance));
+    const record = { c: pieces(parts, "c"), angles: pieces(parts, "angles") };
+    variables.push(...amplitudeVariables(frame, parts), ...speedVariables(frame, record, notes));
+    if (choice.driftDays > 0) variables.push(...driftVariables(frame, record, joinedParts(parts, "variance")));
     const background = parts[0]?.background === undefined ? null : joinedParts(parts, "background");
     if (background !== null)
-      variables.push(...interferenceVariables(frame, choice.ofAnomaly ? c : joinedParts(parts, "anomaly"), background));
+      variables.push(
+        ...interferenceVariables(frame, joinedParts(parts, choice.ofAnomaly ? "c" : "anomaly"), background),
+      );
     if (choice.reconstruct !== null) {
-      const made = reconstructionVariable(frame, c);
+      const made = reconstructionVariable(frame, joinedParts(parts, "c"));
       variables.push(made.variable);
       coordinates.push(made.longitude);
     }

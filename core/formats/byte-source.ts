@@ -5,11 +5,12 @@ export interface ByteSource {
   /** Bytes in all. */
   readonly size: number;
   /**
-   * Exactly `length` bytes from `offset`, in a buffer of their own.
+   * Exactly `length` bytes from `offset`, in a buffer of their own unless `into` is given.
    *
+   * @param into Takes the bytes at its start where the source can read into memory at hand; the answer is then a view of it.
    * @throws FormatError if the range is not inside the source, or fewer bytes arrive.
    */
-  read(offset: number, length: number): Promise<Uint8Array<ArrayBuffer>>;
+  read(offset: number, length: number, into?: Uint8Array<ArrayBuffer>): Promise<Uint8Array<ArrayBuffer>>;
   /**
    * The same at once, for libraries that cannot wait. In a window only workers have it.
    *

@@ -63,6 +63,8 @@ export interface SlabRequest {
   readonly member?: number;
   /** Rows south → north. */
   readonly rows?: IndexRange;
+  /** Memory of an earlier slab that is no longer needed: used for this one where it has just the size. */
+  readonly into?: Float64Array | undefined;
 }
 
 /** An open file: what it holds, and slabs of it in SI units, south → north, west → east. */

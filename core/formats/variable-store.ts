@@ -1,3 +1,5 @@
+import type { Decoding } from "./cf/decoding.ts";
+
 /** What every container (netCDF classic now; netCDF-4 and GRIB the same way) offers to the layers above. */
 
 export type AttributeValue = string | number | readonly number[];
@@ -51,5 +53,18 @@ export interface VariableStore {
    * @throws NotFoundError, ShapeError (slab outside the variable), FormatError.
    */
   readNumbers(variable: string, start: readonly number[], count: readonly number[]): Promise<Float64Array>;
+  /**
+   * The same, decoded on the way: missing values NaN, packing undone. Only where that saves a pass over the numbers.
+   *
+   * @param into Used for the numbers if it has just their size.
+   * @throws As `readNumbers` does.
+   */
+  readDecoded?(
+    variable: string,
+    start: readonly number[],
+    count: readonly number[],
+    how: Decoding,
+    into?: Float64Array,
+  ): Promise<Float64Array>;
   close(): Promise<void>;
 }

@@ -15,15 +15,20 @@ function fileOf(files: readonly OpenFile[], key: string): { file: OpenFile; fiel
   throw new DataError("NotFoundError", `${key} is not open here. Open its file again.`);
 }
 
+/** Slabs of the chunk before, by input: their memory serves the next, for most chunks are of one size. */
+export type SlabMemory = Map<string, Float64Array>;
+
 /**
  * Do one chunk: read its slabs with the halo, make the backgrounds on them, and compute.
  *
+ * @param memory Kept by the caller from chunk to chunk.
  * @throws What reading or computing throws.
  */
 export async function chunkOf(
   files: readonly OpenFile[],
   job: ChunkJob,
   catalogue: readonly Diagnostic[],
+  memory: SlabMemory = new Map(),
 ): Promise<ChunkPart> {
   const { series, times, rows, levelIndices } = job;
   if (job.diagnostic === "background") {
@@ -41,10 +46,16 @@ export async function chunkOf(
   const backgrounds: Record<string, Float64Array> = {};
   for (const [input, key] of Object.entries(job.fields)) {
     const { file, field } = fileOf(files, key);
-    const request = { times: loaded, levels: levelIndices, rows };
+    const request = { times: loaded, levels: levelIndices, rows, into: memory.get(input) };
     const { slab, background } = await slabWithBackground(file, field, request, job.background, job.fitted[input]);
     slabs[input] = slab;
     if (background !== null) backgrounds[input] = background;
   }
-  return diagnostic.chunk({ slabs, backgrounds, times, loaded }, series, job.options);
+  const part = diagnostic.chunk({ slabs, backgrounds, times, loaded }, series, job.options);
+  const leaving = new Set(Object.values(part).map((array) => array.buffer));
+  memory.clear();
+  // A slab that went into the part is on its way to another thread.
+  for (const [input, { data }] of Object.entries(slabs))
+    if (!leaving.has(data.buffer as ArrayBuffer)) memory.set(input, data);
+  return part;
 }

@@ -1,7 +1,7 @@
 import type { FittedBackground } from "../background/fit.ts";
 import type { ChunkPart, Diagnostic } from "../diagnostics/entry.ts";
 import type { OpenFile } from "../formats/dataset.ts";
-import { chunkOf } from "./chunk-worker.ts";
+import { chunkOf, type SlabMemory } from "./chunk-worker.ts";
 import type { FromWorker, ToWorker } from "./crew-line.ts";
 
 /** The buffers of a part, each once, for transfer. */
@@ -16,6 +16,7 @@ export class CrewMember<Source> {
   readonly #catalogue: readonly Diagnostic[];
   readonly #files = new Map<number, Promise<OpenFile>>();
   readonly #backgrounds = new Map<number, FittedBackground>();
+  readonly #memory: SlabMemory = new Map();
   #last: Promise<void> = Promise.resolve();
 
   constructor(
@@ -68,7 +69,12 @@ export class CrewMember<Source> {
       const fitted = Object.fromEntries(
         Object.entries(job.fitted).map(([input, id]) => [input, this.#backgrounds.get(id) as FittedBackground]),
       );
-      const part = await chunkOf(await this.#filesWith(Object.values(job.fields)), { ...job, fitted }, this.#catalogue);
+      const part = await chunkOf(
+        await this.#filesWith(Object.values(job.fields)),
+        { ...job, fitted },
+        this.#catalogue,
+        this.#memory,
+      );
       this.#post({ kind: "done", number, part }, buffersOf(part));
     } catch (error) {
       const { name, message: words } = error instanceof Error ? error : new Error(String(error));

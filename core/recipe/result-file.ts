@@ -171,7 +171,12 @@ export function resultLayout(result: Result): WrittenFile {
   };
 }
 
-/** The bytes of a result's netCDF classic file, piece by piece. @throws As `resultLayout`, before the first piece. */
-export function resultBytes(result: Result): Generator<Uint8Array<ArrayBuffer>, void> {
-  return classicFile(resultLayout(result));
+/**
+ * The bytes of a result's netCDF classic file, piece by piece.
+ *
+ * @param isFleeting True where each piece is done with before the next is asked for.
+ * @throws As `resultLayout`, before the first piece.
+ */
+export function resultBytes(result: Result, isFleeting = false): Generator<Uint8Array<ArrayBuffer>, void> {
+  return classicFile(resultLayout(result), isFleeting);
 }

@@ -19,6 +19,8 @@ interface WholeRequest {
   /** null on a field without levels. */
   readonly levels: readonly number[] | null;
   readonly rows: IndexRange;
+  /** Memory that the slab may use. */
+  readonly into?: Float64Array | undefined;
 }
 
 /** The range with `halo` more on either side, within `size`. */
@@ -42,7 +44,7 @@ export async function slabWithBackground(
   const { times, rows } = request;
   const levels = request.levels === null ? {} : { levels: request.levels };
   if (spec.kind !== "running-mean") {
-    const slab = await file.read(field.key, { times, rows, ...levels });
+    const slab = await file.read(field.key, { times, rows, into: request.into, ...levels });
     return { slab, background: fitted === undefined ? null : backgroundAt(fitted, field.steps, times, rows) };
   }
   return runningSlab(file, field, request, spec);

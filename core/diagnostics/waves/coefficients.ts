@@ -25,24 +25,9 @@ export function rowCoefficients(x: Float64Array, lon: Float64Array, waves: numbe
   const n = lon.length;
   const rows = x.length / n;
   const kept = waves + 1;
-  const departures = new Float64Array(x.length);
   const variance = new Float64Array(rows);
-  for (let r = 0; r < rows; r++) {
-    const base = r * n;
-    const first = x[base];
-    let sum = 0;
-    let squares = 0;
-    for (let i = base; i < base + n; i++) {
-      const d = x[i] - first;
-      departures[i] = d;
-      sum += d;
-      squares += d * d;
-    }
-    // Departures from a value of the row itself: (Σd/N)² is at most N times the variance, so few digits can cancel.
-    variance[r] = Math.max(0, squares / n - (sum / n) * (sum / n));
-  }
   const c = new Float64Array(rows * kept * 2);
-  realTransform(n).forward(departures, rows, c, kept);
+  realTransform(n).departures(x, rows, c, kept, variance);
   const turns = new Float64Array(2 * kept);
   const start = (lon[0] as number) * RADIANS_PER_DEGREE;
   for (let k = 0; k < kept; k++) {
@@ -78,8 +63,12 @@ export function waveAmplitude(re: number, im: number, k: number, nLon: number): 
 
 /** Ridge longitude −arg(c_k)/k in degrees east, in [0, 360/k); NaN for a wave of nothing. */
 export function ridgeLongitude(re: number, im: number, k: number): number {
-  if (re === 0 && im === 0) return Number.NaN;
+  return re === 0 && im === 0 ? Number.NaN : ridgeOfAngle(Math.atan2(im, re), k);
+}
+
+/** Ridge longitude of a coefficient's argument in radians, in degrees east, in [0, 360/k). */
+export function ridgeOfAngle(angle: number, k: number): number {
   const cycle = 360 / k;
-  const ridge = -Math.atan2(im, re) / RADIANS_PER_DEGREE / k;
+  const ridge = -angle / RADIANS_PER_DEGREE / k;
   return ridge < 0 ? (ridge + cycle < cycle ? ridge + cycle : 0) : ridge;
 }

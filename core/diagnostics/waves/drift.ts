@@ -30,16 +30,25 @@ export interface WavePath {
 /**
  * Size and ridge of wave k at each step, written to `path`.
  *
- * @param c     Coefficients, step i at index 2i + shift.
- * @param nTime Steps.
+ * @param c      Coefficients, step i at index 2i + shift.
+ * @param angles Their arguments, radians, step i at index i + place.
+ * @param nTime  Steps.
  */
-export function fillWavePath(path: WavePath, c: Float64Array, shift: number, nTime: number, k: number): void {
+export function fillWavePath(
+  path: WavePath,
+  c: Float64Array,
+  shift: number,
+  angles: Float64Array,
+  place: number,
+  nTime: number,
+  k: number,
+): void {
   const perWave = -1 / RADIANS_PER_DEGREE / k;
   for (let i = 0; i < nTime; i++) {
     const re = c[2 * i + shift];
     const im = c[2 * i + shift + 1];
     path.size[i] = Math.sqrt(re * re + im * im);
-    path.ridge[i] = Math.atan2(im, re) * perWave;
+    path.ridge[i] = angles[i + place] * perWave;
   }
 }
 

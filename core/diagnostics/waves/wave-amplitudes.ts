@@ -1,50 +1,86 @@
 import { RADIANS_PER_DEGREE } from "../../constants.ts";
 import { reasonCode } from "../../field/reasons.ts";
-import type { ResultVariable } from "../entry.ts";
-import { isNyquist, ridgeLongitude, waveAmplitude } from "./coefficients.ts";
+import type { ChunkPart, ResultVariable } from "../entry.ts";
+import { partArray } from "../precision.ts";
+import { isNyquist, type RowCoefficients, ridgeOfAngle, waveAmplitude } from "./coefficients.ts";
+import { joinedNumbers, joinedReasons } from "./series-join.ts";
 import type { WaveFrame } from "./wave-frame.ts";
 
 const EACH = ["time", "level", "row", "wavenumber"] as const;
 const SMALL = reasonCode("small");
 
-/** Amplitude, ridge longitude, share of the variance and phase of each wave at each step. */
-export function amplitudeVariables(frame: WaveFrame, c: Float64Array, variance: Float64Array): ResultVariable[] {
+/** Names of a chunk's numbers, in the order in which they are made. */
+const PARTS = ["amplitude", "ridge", "share", "phase"] as const;
+
+/**
+ * Amplitude, ridge longitude, share of the variance and phase of each wave at each step of a chunk, and why one is missing.
+ *
+ * `angles` are the coefficients' arguments in radians, kept for the speeds.
+ *
+ * @param firstRow Row at which the chunk starts, counted over time, level and row of the record.
+ */
+export function amplitudeParts(
+  frame: WaveFrame,
+  { c, variance }: RowCoefficients,
+  firstRow: number,
+): Record<string, ChunkPart[string]> {
   const { waves, nLon, choice } = frame;
-  const units = frame.series.units;
   const kept = choice.most + 1;
   const rows = variance.length;
   const size = rows * waves.length;
-  const amplitude = frame.array(size);
-  const ridge = frame.array(size);
-  const share = frame.array(size);
-  const phase = frame.array(size);
+  const whole = frame.nTime * frame.nLevel * frame.nRow * waves.length;
+  const [amplitude, ridge, share, phase] = PARTS.map(() => partArray(size, whole));
+  const angles = new Float64Array(size);
   const reasons = new Uint8Array(size);
   const phaseReasons = new Uint8Array(size);
   const shareReasons = new Uint8Array(size);
+  let careful = 0;
   for (let r = 0, at = 0; r < rows; r++) {
-    const total = variance[r] as number;
+    const total = variance[r];
     for (const k of waves) {
       const from = 2 * (r * kept + k);
-      const re = c[from] as number;
-      const im = c[from + 1] as number;
+      const re = c[from];
+      const im = c[from + 1];
       const a = waveAmplitude(re, im, k, nLon);
       amplitude[at] = a;
-      ridge[at] = ridgeLongitude(re, im, k);
+      const angle = Math.atan2(im, re);
+      angles[at] = angle;
+      ridge[at] = a === 0 ? Number.NaN : ridgeOfAngle(angle, k);
       share[at] = (isNyquist(k, nLon) ? a * a : (a * a) / 2) / total;
-      phase[at] = a === 0 ? Number.NaN : Math.atan2(im, re) / RADIANS_PER_DEGREE;
-      const absent = Number.isNaN(a) ? frame.absence(r, choice.ofAnomaly) : 0;
+      phase[at] = a === 0 ? Number.NaN : angle / RADIANS_PER_DEGREE;
+      const absent = Number.isNaN(a) ? frame.absence(firstRow + r, choice.ofAnomaly) : 0;
       reasons[at] = absent;
       // A wave of nothing has no ridge, and a row of one value (a pole) no variance to share.
       phaseReasons[at] = a === 0 ? SMALL : absent;
       shareReasons[at] = total === 0 ? SMALL : absent;
+      careful += phaseReasons[at] | shareReasons[at];
       at += 1;
     }
   }
+  const made = { amplitude, ridge, share, phase, angles };
+  // Where every number is plain, which is the rule, there is nothing to hand over.
+  return careful === 0 ? made : { ...made, reasons, phaseReasons, shareReasons };
+}
+
+/** The chunks' amplitudes, ridges, shares and phases as variables of the record. */
+export function amplitudeVariables(frame: WaveFrame, parts: readonly ChunkPart[]): ResultVariable[] {
+  const numbers = (name: string) => joinedNumbers(parts, name);
+  const [reasons, phaseReasons, shareReasons] = ["reasons", "phaseReasons", "shareReasons"].map((name) =>
+    joinedReasons(parts, name, "amplitude"),
+  );
+  const { units } = frame.series;
   return [
-    frame.variable("amplitude", "Amplitude", units, EACH, amplitude, reasons),
-    frame.variable("ridge_longitude", "Ridge longitude", "degrees_east", EACH, ridge, phaseReasons),
-    frame.variable("variance_share", "Share of the variance along the circle", "1", EACH, share, shareReasons),
-    frame.variable("phase", "Phase, the argument of the coefficient", "degrees", EACH, phase, phaseReasons),
+    frame.variable("amplitude", "Amplitude", units, EACH, numbers("amplitude"), reasons),
+    frame.variable("ridge_longitude", "Ridge longitude", "degrees_east", EACH, numbers("ridge"), phaseReasons),
+    frame.variable(
+      "variance_share",
+      "Share of the variance along the circle",
+      "1",
+      EACH,
+      numbers("share"),
+      shareReasons,
+    ),
+    frame.variable("phase", "Phase, the argument of the coefficient", "degrees", EACH, numbers("phase"), phaseReasons),
   ];
 }
 

@@ -1,5 +1,7 @@
 import type { ChunkInput, ChunkPart, Series } from "../entry.ts";
 import { rowCoefficients } from "./coefficients.ts";
+import { amplitudeParts } from "./wave-amplitudes.ts";
+import { WaveFrame } from "./wave-frame.ts";
 import { bandWeights, type WaveChoice } from "./wave-options.ts";
 
 /** Rows of each step and level joined to one, by area weight; a missing value in any row is missing in the mean. */
@@ -58,7 +60,12 @@ export function waveChunk(input: ChunkInput, series: Series, choice: WaveChoice)
   const clim = background === undefined ? undefined : joined(pick(background));
   const subject = choice.ofAnomaly && clim !== undefined ? difference(x, clim) : x;
   const { c, variance } = rowCoefficients(subject, lon, choice.most);
-  const part: Record<string, Float64Array<ArrayBuffer>> = { c, variance };
+  const part: Record<string, ChunkPart[string]> = { c, variance };
+  if (choice.band === null || choice.coherent) {
+    const frame = new WaveFrame(series, choice);
+    const firstRow = (input.times[0] - series.times[0]) * frame.nLevel * frame.nRow;
+    Object.assign(part, amplitudeParts(frame, { c, variance }, firstRow));
+  }
   if (clim !== undefined) {
     part.background = rowCoefficients(clim, lon, choice.most).c;
     if (!choice.ofAnomaly) part.anomaly = rowCoefficients(difference(x, clim), lon, choice.most).c;

@@ -33,20 +33,50 @@ function evenStepOf(days: Float64Array): number | null {
   return step;
 }
 
-/** The coefficients of one place, wave by wave with the steps side by side: the record has them far apart. */
+/** What speeds are made from: arrays in pieces of whole steps, in the order of time. */
+export interface WaveRecord {
+  /** Coefficients, shape (steps, places, waves kept, 2). */
+  readonly c: readonly Float64Array[];
+  /** Their arguments, radians, shape (steps, places, waves of the result). */
+  readonly angles: readonly Float64Array[];
+}
+
+/** The angles of one place, wave by wave with the steps side by side. */
+function gatheredAngles(
+  record: readonly Float64Array[],
+  place: number,
+  places: number,
+  waves: number,
+  nTime: number,
+  into: Float64Array,
+): void {
+  let t = 0;
+  for (const angles of record)
+    for (let from = place * waves; from < angles.length; from += places * waves, t++)
+      for (let w = 0; w < waves; w++) into[w * nTime + t] = angles[from + w];
+}
+
+/**
+ * The coefficients of one place, wave by wave with the steps side by side: the record has them far apart.
+ *
+ * @param record Coefficients in pieces of whole steps, in the order of time.
+ * @param stride Numbers of a step.
+ */
 function gathered(
-  c: Float64Array,
+  record: readonly Float64Array[],
   place: number,
   stride: number,
   kept: number,
   nTime: number,
   into: Float64Array,
 ): void {
-  for (let t = 0; t < nTime; t++) {
-    const from = t * stride + 2 * place * kept;
-    for (let k = 0; k < kept; k++) {
-      into[2 * (k * nTime + t)] = c[from + 2 * k];
-      into[2 * (k * nTime + t) + 1] = c[from + 2 * k + 1];
+  let t = 0;
+  for (const c of record) {
+    for (let from = 2 * place * kept; from < c.length; from += stride, t++) {
+      for (let k = 0; k < kept; k++) {
+        into[2 * (k * nTime + t)] = c[from + 2 * k];
+        into[2 * (k * nTime + t) + 1] = c[from + 2 * k + 1];
+      }
     }
   }
 }
@@ -56,7 +86,7 @@ function emptyPath(nTime: number): WavePath {
 }
 
 /** Speeds over all steps, and how far each wave stands still. `notes` takes a sentence where something is left out. */
-export function speedVariables(frame: WaveFrame, c: Float64Array, notes: string[]): ResultVariable[] {
+export function speedVariables(frame: WaveFrame, record: WaveRecord, notes: string[]): ResultVariable[] {
   const { waves, nLevel, nRow, nTime, choice, series, nLon } = frame;
   const isTime = series.steps.kind === "time";
   const kept = choice.most + 1;
@@ -79,16 +109,19 @@ export function speedVariables(frame: WaveFrame, c: Float64Array, notes: string[
     notes.push(`The record steps along "${series.steps.name}", which is no time: there are no phase speeds.`);
   else if (step === null && nTime > 1) notes.push("The steps are not evenly spaced: there is no lag-one speed.");
   const place = new Float64Array(2 * kept * nTime);
+  const angles = new Float64Array(waves.length * nTime);
   const path = emptyPath(nTime);
   for (let p = 0, at = 0; p < nLevel * nRow; p++) {
-    gathered(c, p, stride, kept, nTime, place);
+    gathered(record.c, p, stride, kept, nTime, place);
+    gatheredAngles(record.angles, p, nLevel * nRow, waves.length, nTime, angles);
     const metres =
       EARTH_RADIUS * Math.cos((choice.latitudes[p % nRow] as number) * RADIANS_PER_DEGREE) * RADIANS_PER_DEGREE;
-    for (const k of waves) {
+    for (let w = 0; w < waves.length; w++) {
+      const k = waves[w];
       const shift = 2 * k * nTime;
       // The Nyquist wave has no phase: its crests can only stand on the columns or between them.
       const usable = isTime && !isNyquist(k, nLon);
-      if (usable) fillWavePath(path, place, shift, nTime, k);
+      if (usable) fillWavePath(path, place, shift, angles, w * nTime, nTime, k);
       const drift = usable ? phaseDrift(path, days, 0, nTime, k, choice.floor) : NOTHING;
       const lagOne = usable && step !== null ? lagOneDrift(place, shift, nTime, k, step) : NOTHING;
       const still = stationarityRatio(place, shift, nTime);
@@ -135,7 +168,7 @@ export function speedVariables(frame: WaveFrame, c: Float64Array, notes: string[
 }
 
 /** Drift at each step from the days up to it, as one sees it on the day. */
-export function driftVariables(frame: WaveFrame, c: Float64Array, variance: Float64Array): ResultVariable[] {
+export function driftVariables(frame: WaveFrame, record: WaveRecord, variance: Float64Array): ResultVariable[] {
   const { waves, nLevel, nRow, nTime, choice, series, nLon, days } = frame;
   const isTime = series.steps.kind === "time";
   const kept = choice.most + 1;
@@ -151,17 +184,19 @@ export function driftVariables(frame: WaveFrame, c: Float64Array, variance: Floa
     firsts[t] = from;
   }
   const place = new Float64Array(2 * kept * nTime);
+  const angles = new Float64Array(waves.length * nTime);
   const path = emptyPath(nTime);
   const totals = new Float64Array(nTime);
   for (let p = 0; p < places; p++) {
-    gathered(c, p, 2 * places * kept, kept, nTime, place);
+    gathered(record.c, p, 2 * places * kept, kept, nTime, place);
+    gatheredAngles(record.angles, p, places, waves.length, nTime, angles);
     for (let t = 0; t < nTime; t++) {
       totals[t] = 0;
       for (let s = firsts[t]; s <= t; s++) totals[t] += variance[s * places + p];
     }
     waves.forEach((k, w) => {
       const usable = isTime && !isNyquist(k, nLon);
-      if (usable) fillWavePath(path, place, 2 * k * nTime, nTime, k);
+      if (usable) fillWavePath(path, place, 2 * k * nTime, angles, w * nTime, nTime, k);
       for (let t = 0; t < nTime; t++) {
         let drift = usable ? phaseDrift(path, days, firsts[t], t + 1, k, choice.floor) : NOTHING;
         let own = 0;

@@ -1,4 +1,4 @@
-import type { StoredVariable } from "../variable-store.ts";
+import type { StoredVariable, VariableStore } from "../variable-store.ts";
 import { numbersOf, textOf } from "./attributes.ts";
 
 /** How stored numbers become values: missing ones are known as they stand in the file, then value = stored · scale + offset. */
@@ -82,4 +82,17 @@ export function decodeInPlace(stored: Float64Array, how: Decoding): Float64Array
     stored[i] = x >= least && x <= most ? x * scale + offset : Number.NaN;
   }
   return stored;
+}
+
+/** A hyperslab of a variable, decoded, in one pass (into `into`, if that has just the size) where the store can. @throws As the store does. */
+export function decodedNumbers(
+  store: VariableStore,
+  variable: string,
+  start: readonly number[],
+  count: readonly number[],
+  how: Decoding,
+  into?: Float64Array,
+): Promise<Float64Array> {
+  if (store.readDecoded !== undefined) return store.readDecoded(variable, start, count, how, into);
+  return store.readNumbers(variable, start, count).then((stored) => decodeInPlace(stored, how));
 }

@@ -2,7 +2,7 @@ import { DataError } from "../../errors.ts";
 import type { Slab } from "../../field/slab.ts";
 import type { FieldDescription, SlabRequest } from "../dataset.ts";
 import type { StoredVariable, VariableStore } from "../variable-store.ts";
-import { type Decoding, decodeInPlace } from "./decoding.ts";
+import { type Decoding, decodedNumbers } from "./decoding.ts";
 import type { FieldLayout } from "./field-layout.ts";
 
 /** A field of an open file with all that reading it takes. */
@@ -75,7 +75,8 @@ export async function fieldSlab(store: VariableStore, field: ReadableField, requ
     along(levelDim, run.from, run.count);
     along(latDim, firstRow, nLat);
     along(lonDim, firstColumn, nLon);
-    const stored = decodeInPlace(await store.readNumbers(variable.name, start, count), field.decoding);
+    const into = run.count === nLevel ? request.into : undefined;
+    const stored = await decodedNumbers(store, variable.name, start, count, field.decoding, into);
     const stride = (dim: number) => (dim < 0 ? 0 : count.slice(dim + 1).reduce((product, n) => product * n, 1));
     const inOrder =
       run.count === nLevel &&

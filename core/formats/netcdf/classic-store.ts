@@ -1,6 +1,8 @@
 import { DataError } from "../../errors.ts";
 import type { ByteSource } from "../byte-source.ts";
+import { type Decoding, decodeInPlace } from "../cf/decoding.ts";
 import type { StoredDimension, StoredVariable, VariableStore } from "../variable-store.ts";
+import { decodeBigEndian, isDecodable } from "./decoding-kernel.ts";
 import { classicHeader } from "./header.ts";
 import { PrefixEnds } from "./header-bytes.ts";
 import { batchesOf, runsOf } from "./runs.ts";
@@ -10,6 +12,8 @@ import type { ClassicHeader, ClassicVariable } from "./types.ts";
 const FIRST_PREFIX = 64 * 1024;
 /** No real header comes near this; a damaged one must not pull a whole file into memory. */
 const MOST_HEADER = 32 * 1024 * 1024;
+
+const NO_BYTES = new Uint8Array(0);
 
 const FORMATS = {
   1: "netCDF classic (CDF-1)",
@@ -84,7 +88,16 @@ export async function openNetcdfClassic(source: ByteSource): Promise<VariableSto
     attributes: variable.attributes,
   }));
 
-  async function readNumbers(name: string, start: readonly number[], count: readonly number[]): Promise<Float64Array> {
+  // Memory of the last read, for the next: asking the system for fresh memory takes as long as decoding into it.
+  let spare: Uint8Array<ArrayBuffer> = NO_BYTES;
+
+  /** Bytes of a hyperslab, stretch by stretch, to `take`. */
+  async function readRuns(
+    name: string,
+    start: readonly number[],
+    count: readonly number[],
+    take: (variable: ClassicVariable, values: number) => (raw: Uint8Array<ArrayBuffer>, into: number) => void,
+  ): Promise<void> {
     const variable = laidOut.get(name);
     if (variable === undefined) throw new DataError("NotFoundError", `${source.name} holds no variable ${name}.`);
     const shape = shapeOf(variable);
@@ -118,15 +131,47 @@ export async function openNetcdfClassic(source: ByteSource): Promise<VariableSto
         "FormatError",
         `${source.name}, ${name}: the file ends at byte ${source.size}, inside this variable. It is cut short; fetch it again.`,
       );
-    const out = new Float64Array(values);
-    for (const batch of batchesOf(runsOf(variable.begin, shape, start, count, strides, bytes), bytes)) {
-      const raw = await source.read(batch.offset, batch.length);
+    const put = take(variable, values);
+    const batches = batchesOf(runsOf(variable.begin, shape, start, count, strides, bytes), bytes);
+    const longest = batches.reduce((most, { length }) => Math.max(most, length), 0);
+    // Reads that overlap in time each have memory of their own.
+    const memory = spare.length >= longest && longest > 0 ? spare : new Uint8Array(longest);
+    spare = NO_BYTES;
+    for (const batch of batches) {
+      const raw = await source.read(batch.offset, batch.length, memory);
       for (const run of batch.runs) {
         const from = run.offset - batch.offset;
         const whole = from === 0 && run.values * bytes === raw.length;
-        out.set(numbersOf(whole ? raw : raw.slice(from, from + run.values * bytes), variable.type), run.into);
+        put(whole ? raw : raw.subarray(from, from + run.values * bytes), run.into);
       }
     }
+    spare = memory;
+  }
+
+  async function readNumbers(name: string, start: readonly number[], count: readonly number[]): Promise<Float64Array> {
+    let out = new Float64Array(0);
+    await readRuns(name, start, count, ({ type }, values) => {
+      out = new Float64Array(values);
+      // Turned round in place, so a piece of a longer read needs a buffer of its own.
+      return (raw, into) => out.set(numbersOf(raw.length === raw.buffer.byteLength ? raw : raw.slice(), type), into);
+    });
+    return out;
+  }
+
+  async function readDecoded(
+    name: string,
+    start: readonly number[],
+    count: readonly number[],
+    how: Decoding,
+    into?: Float64Array,
+  ): Promise<Float64Array> {
+    const type = laidOut.get(name)?.type ?? "char";
+    if (!isDecodable(type, how)) return decodeInPlace(await readNumbers(name, start, count), how);
+    let out: Float64Array = new Float64Array(0);
+    await readRuns(name, start, count, (_, values) => {
+      out = into?.length === values ? into : new Float64Array(values);
+      return (raw, at) => decodeBigEndian(raw, type, how, out, at);
+    });
     return out;
   }
 
@@ -138,6 +183,7 @@ export async function openNetcdfClassic(source: ByteSource): Promise<VariableSto
     attributes: header.attributes,
     notes,
     readNumbers,
+    readDecoded,
     close: async () => undefined,
   };
 }

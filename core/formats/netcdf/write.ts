@@ -23,7 +23,7 @@ export interface WrittenFile {
 const TYPE = { int8: 1, char: 2, int16: 3, int32: 4, float32: 5, float64: 6 } as const;
 const LARGEST_CDF1 = 2 ** 31 - 4;
 /** Bytes that are turned round at a time, so that no second copy of a large variable is made. */
-const PIECE = 4 * 1024 * 1024;
+const PIECE = 1024 * 1024;
 
 function typeOf(data: WrittenNumbers): number {
   if (data instanceof Float64Array) return TYPE.float64;
@@ -32,14 +32,15 @@ function typeOf(data: WrittenNumbers): number {
   return data instanceof Int16Array ? TYPE.int16 : TYPE.int8;
 }
 
-/** Big-endian bytes of numbers, in a buffer of their own. */
-function bigEndian(data: WrittenNumbers): Uint8Array<ArrayBuffer> {
-  const copy = data.slice();
-  const buffer = copy.buffer as ArrayBuffer;
-  if (copy instanceof Int16Array) swap2(new Uint16Array(buffer));
-  else if (copy instanceof Float64Array) swap8(new Uint32Array(buffer));
-  else if (!(copy instanceof Int8Array)) swap4(new Uint32Array(buffer));
-  return new Uint8Array(buffer);
+/** Big-endian bytes of numbers, in `memory`, which must be large enough, or in a buffer of their own. */
+function bigEndian(data: WrittenNumbers, memory?: ArrayBuffer): Uint8Array<ArrayBuffer> {
+  const length = data.byteLength;
+  const bytes = new Uint8Array(memory ?? new ArrayBuffer(length), 0, length);
+  bytes.set(new Uint8Array(data.buffer, data.byteOffset, length));
+  if (data instanceof Int16Array) swap2(new Uint16Array(bytes.buffer, 0, length / 2));
+  else if (data instanceof Float64Array) swap8(new Uint32Array(bytes.buffer, 0, length / 4));
+  else if (!(data instanceof Int8Array)) swap4(new Uint32Array(bytes.buffer, 0, length / 4));
+  return bytes;
 }
 
 /** Grows by whole items: the header is small. */
@@ -142,9 +143,10 @@ function checkFile(file: WrittenFile): void {
  *
  * Source: NetCDF Classic Format Specification (Unidata).
  *
+ * @param isFleeting True where each piece is done with before the next is asked for: they then share memory.
  * @throws ShapeError, before the first piece, if a variable does not fit its dimensions.
  */
-export function* classicFile(file: WrittenFile): Generator<Uint8Array<ArrayBuffer>, void> {
+export function* classicFile(file: WrittenFile, isFleeting = false): Generator<Uint8Array<ArrayBuffer>, void> {
   checkFile(file);
   const none = file.variables.map(() => 0);
   const total = file.variables.reduce((sum, { data }) => sum + paddedBytes(data), 0);
@@ -156,9 +158,10 @@ export function* classicFile(file: WrittenFile): Generator<Uint8Array<ArrayBuffe
     return begin;
   });
   yield headerBytes(file, version, begins);
+  const memory = isFleeting ? new ArrayBuffer(PIECE) : undefined;
   for (const { data } of file.variables) {
     const each = Math.floor(PIECE / data.BYTES_PER_ELEMENT);
-    for (let from = 0; from < data.length; from += each) yield bigEndian(data.subarray(from, from + each));
+    for (let from = 0; from < data.length; from += each) yield bigEndian(data.subarray(from, from + each), memory);
     const padding = paddedBytes(data) - data.byteLength;
     if (padding > 0) yield new Uint8Array(padding);
   }

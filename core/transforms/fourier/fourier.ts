@@ -19,6 +19,14 @@ export interface RealTransform {
    */
   forward(x: Float64Array, rows: number, out: Float64Array, waves: number): void;
   /**
+   * `forward` of each row's departures from its own first value: sums of heights, which are 50 times their waves, keep that
+   * much more of their last digits.
+   *
+   * @param variance Variance of each row about its mean, (1/n) Σ (x − x̄)², shape (rows).
+   * @throws ShapeError if a size does not fit.
+   */
+  departures(x: Float64Array, rows: number, out: Float64Array, waves: number, variance: Float64Array): void;
+  /**
    * x_j = Σ_k c_k e^{2πikj/n} over −n/2 < k ≤ n/2 with c_{−k} = conj c_k, c_k = 0 from `waves` on. Imaginary parts of the mean
    * and of the Nyquist wave are ignored; a Nyquist wave counts once.
    *
@@ -87,6 +95,13 @@ export function realTransform(n: number, wanted: "wasm" | "plain" = "wasm"): Rea
       requireSize("x", x, rows * n);
       requireSize("out", out, 2 * rows * waves);
       run.realForward(x, rows, waves, out);
+    },
+    departures(x, rows, out, waves, variance) {
+      requireWaves(n, waves);
+      requireSize("x", x, rows * n);
+      requireSize("out", out, 2 * rows * waves);
+      requireSize("variance", variance, rows);
+      run.departuresForward(x, rows, waves, out, variance);
     },
     inverse(c, rows, out, waves) {
       requireWaves(n, waves);

@@ -179,6 +179,31 @@ export function plainKernel(n: number): FourierKernel {
     }
   }
 
+  function departuresForward(
+    x: Float64Array,
+    rows: number,
+    waves: number,
+    out: Float64Array,
+    variance: Float64Array,
+  ): void {
+    const departures = new Float64Array(rows * n);
+    for (let row = 0; row < rows; row++) {
+      const base = row * n;
+      const first = x[base] as number;
+      let sum = 0;
+      let squares = 0;
+      for (let i = base; i < base + n; i++) {
+        const d = (x[i] as number) - first;
+        departures[i] = d;
+        sum += d;
+        squares += d * d;
+      }
+      // Departures from a value of the row itself: (Σd/n)² is at most n times the variance, so few digits can cancel.
+      variance[row] = Math.max(0, squares / n - (sum / n) * (sum / n));
+    }
+    realForward(departures, rows, waves, out);
+  }
+
   function realInverse(coefficients: Float64Array, rows: number, waves: number, out: Float64Array): void {
     for (let row = 0; row < rows; row++) {
       const base = 2 * row * waves;
@@ -231,5 +256,5 @@ export function plainKernel(n: number): FourierKernel {
     }
   }
 
-  return { realForward, realInverse, complex };
+  return { realForward, departuresForward, realInverse, complex };
 }

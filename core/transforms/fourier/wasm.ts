@@ -1,4 +1,4 @@
-import { bytesOfBase64 } from "./base64.ts";
+import { kernelExports } from "../../wasm/kernel-module.ts";
 import { KERNEL } from "./kernel.generated.ts";
 import type { FourierKernel } from "./kernel.ts";
 import { innerLength, radices, twiddles } from "./plan.ts";
@@ -39,6 +39,7 @@ interface Exports {
     first: number,
     second: number,
   ): void;
+  departures(n: number, rows: number, x: number, variance: number): void;
   complex(
     n: number,
     rows: number,
@@ -53,25 +54,10 @@ interface Exports {
   ): void;
 }
 
-let compiled: WebAssembly.Module | null | undefined;
-
-/** The compiled module, once; null where WebAssembly or its SIMD is missing. */
-function kernelModule(): WebAssembly.Module | null {
-  if (compiled === undefined) {
-    try {
-      compiled = new WebAssembly.Module(bytesOfBase64(KERNEL));
-    } catch {
-      compiled = null;
-    }
-  }
-  return compiled;
-}
-
 /** The kernel in WebAssembly for rows of `n`, two rows at a time, with a memory of its own; null where it cannot run. */
 export function wasmKernel(n: number): FourierKernel | null {
-  const module = kernelModule();
-  if (module === null) return null;
-  const exports = new WebAssembly.Instance(module, { env: { abort: () => undefined } }).exports as unknown as Exports;
+  const exports = kernelExports<Exports>(KERNEL);
+  if (exports === null) return null;
   const { memory } = exports;
   const h = innerLength(n);
   const even = h !== n;
@@ -86,6 +72,7 @@ export function wasmKernel(n: number): FourierKernel | null {
   const block = 2 * Math.max(1, Math.floor(BLOCK_BYTES / (32 * n)));
   const input = place.reserve(16 * n * block);
   const output = place.reserve(16 * n * block);
+  const spread = place.reserve(8 * block);
   place.done();
   const view = new Float64Array(memory.buffer);
 
@@ -96,36 +83,42 @@ export function wasmKernel(n: number): FourierKernel | null {
     rowIn: number,
     out: Float64Array,
     rowOut: number,
-    run: (rows: number) => void,
+    run: (rows: number, row: number, here: number) => void,
   ): void {
     for (let row = 0; row < rows; row += block) {
       const here = Math.min(block, rows - row);
       const whole = here + (here % 2);
       view.set(x.subarray(row * rowIn, (row + here) * rowIn), input / 8);
       if (whole > here) view.fill(0, input / 8 + here * rowIn, input / 8 + whole * rowIn);
-      run(whole);
+      run(whole, row, here);
       out.set(view.subarray(output / 8, output / 8 + here * rowOut), row * rowOut);
     }
   }
 
+  const forward = (rows: number, waves: number): void =>
+    exports.realForward(
+      n,
+      h,
+      rows,
+      waves,
+      halfFactors.at,
+      halfFactors.count,
+      halfTable,
+      table,
+      input,
+      output,
+      first,
+      second,
+    );
+
   return {
-    realForward: (x, rows, waves, out) =>
-      inBlocks(x, rows, n, out, 2 * waves, (some) =>
-        exports.realForward(
-          n,
-          h,
-          some,
-          waves,
-          halfFactors.at,
-          halfFactors.count,
-          halfTable,
-          table,
-          input,
-          output,
-          first,
-          second,
-        ),
-      ),
+    realForward: (x, rows, waves, out) => inBlocks(x, rows, n, out, 2 * waves, (some) => forward(some, waves)),
+    departuresForward: (x, rows, waves, out, variance) =>
+      inBlocks(x, rows, n, out, 2 * waves, (some, row, here) => {
+        exports.departures(n, some, input, spread);
+        variance.set(view.subarray(spread / 8, spread / 8 + here), row);
+        forward(some, waves);
+      }),
     realInverse: (c, rows, waves, out) =>
       inBlocks(c, rows, 2 * waves, out, n, (some) =>
         exports.realInverse(

@@ -1,10 +1,10 @@
 import { readFileSync } from "node:fs";
 import { describe, expect, test } from "vitest";
-import { bytesOfBase64 } from "../../../../core/transforms/fourier/base64.ts";
 import { complexTransform, realTransform } from "../../../../core/transforms/fourier/fourier.ts";
-import { compiledKernel } from "../../../../core/transforms/fourier/kernel/compile.mjs";
 import { KERNEL } from "../../../../core/transforms/fourier/kernel.generated.ts";
 import { radices, twiddles } from "../../../../core/transforms/fourier/plan.ts";
+import { bytesOfBase64 } from "../../../../core/wasm/base64.ts";
+import { compiledKernel, KERNELS } from "../../../../core/wasm/compile.mjs";
 
 interface Case {
   n: number;
@@ -253,11 +253,44 @@ test("radices multiply to the length", () => {
 });
 
 test("the committed kernel is what its source compiles to", async () => {
-  const fresh = await compiledKernel();
+  const fresh = await compiledKernel(KERNELS.Fourier);
   expect(Buffer.from(bytesOfBase64(KERNEL)).equals(Buffer.from(fresh))).toBe(true);
 });
 
 test("base64 is decoded as Node does", () => {
   for (const text of ["", "f", "fo", "foo", "foob", "fooba", "foobar"]) // RFC 4648 §10
     expect(Buffer.from(bytesOfBase64(Buffer.from(text).toString("base64"))).toString()).toBe(text);
+});
+
+test.each(["wasm", "plain"] as const)("%s: departures from a row's first value, and its variance", (kernel) => {
+  for (const n of [9, 144, 241]) {
+    const rows = 5;
+    const x = new Float64Array(rows * n);
+    for (let r = 0; r < rows - 1; r++) for (let j = 0; j < n; j++) x[r * n + j] = 5500 + 100 * r + row(n)[(j + r) % n]!;
+    x.fill(Number.NaN, (rows - 1) * n, (rows - 1) * n + 1);
+    const waves = 4;
+    const out = new Float64Array(2 * rows * waves);
+    const variance = new Float64Array(rows);
+    const kept = x.slice();
+    realTransform(n, kernel).departures(x, rows, out, waves, variance);
+    expect(x).toEqual(kept);
+    for (let r = 0; r < rows - 1; r++) {
+      const own = x.slice(r * n, (r + 1) * n);
+      const mean = own.reduce((sum, value) => sum + value, 0) / n;
+      const direct = own.reduce((sum, value) => sum + (value - mean) ** 2, 0) / n;
+      // Two sums of n squares, each term rounded three times, n terms added: n · 4 · 2⁻⁵³ of Σd²/n, d up to the row's range.
+      const range = Math.max(...own) - Math.min(...own);
+      expect(Math.abs((variance[r] as number) - direct)).toBeLessThanOrEqual(8 * n * 2 ** -53 * range * range);
+      const shifted = own.map((value) => value - (own[0] as number));
+      const want = new Float64Array(2 * waves);
+      realTransform(n, kernel).forward(shifted, 1, want, waves);
+      expectClose(out.subarray(2 * r * waves, 2 * (r + 1) * waves), want, 0, `n ${n}, row ${r}`);
+    }
+    expect(variance[rows - 1]).toBeNaN();
+    expect(out[2 * (rows - 1) * waves]).toBeNaN();
+  }
+  const short = new Float64Array(1);
+  expect(() => realTransform(9, kernel).departures(new Float64Array(18), 2, new Float64Array(8), 2, short)).toThrow(
+    "variance has 1 numbers; 2 are needed",
+  );
 });

@@ -207,3 +207,33 @@ export function complex(
     }
   }
 }
+
+/** Each row of x (rows, n) less its first value, in place; and the variance of each row about its mean. */
+export function departures(n: u32, rows: u32, x: usize, variance: usize): void {
+  for (let row: u32 = 0; row < rows; row++) {
+    const at = x + (<usize>(row * n) << 3);
+    const first = load<f64>(at);
+    const v = splat(first);
+    let sums = splat(0), squares = splat(0);
+    let j: u32 = 0;
+    for (; j + 2 <= n; j += 2) {
+      const here = at + (<usize>j << 3);
+      const d = sub(v128.load(here), v);
+      v128.store(here, d);
+      sums = add(sums, d);
+      squares = add(squares, mul(d, d));
+    }
+    let sum = f64x2.extract_lane(sums, 0) + f64x2.extract_lane(sums, 1);
+    let square = f64x2.extract_lane(squares, 0) + f64x2.extract_lane(squares, 1);
+    if (j < n) {
+      const d = load<f64>(at + (<usize>j << 3)) - first;
+      store<f64>(at + (<usize>j << 3), d);
+      sum += d;
+      square += d * d;
+    }
+    const mean = sum / n;
+    const spread = square / n - mean * mean;
+    // A NaN stays: only what is under nothing becomes nothing.
+    store<f64>(variance + (<usize>row << 3), spread < 0 ? 0 : spread);
+  }
+}
