@@ -34,7 +34,7 @@ function finish(parts: readonly ChunkPart[], series: Series, options: OptionValu
       "The band is an incoherent mean: rows are averaged after their amplitudes are taken, so there is no ridge, phase or speed.",
     );
   } else {
-    const record = { c: pieces(parts, "c"), angles: pieces(parts, "angles") };
+    const record = { paths: pieces(parts, "paths"), angles: pieces(parts, "angles") };
     variables.push(...amplitudeVariables(frame, parts), ...speedVariables(frame, record, notes));
     if (choice.driftDays > 0) variables.push(...driftVariables(frame, record, joinedParts(parts, "variance")));
     const background = parts[0]?.background === undefined ? null : joinedParts(parts, "background");

@@ -15,7 +15,8 @@ const PARTS = ["amplitude", "ridge", "share", "phase"] as const;
 /**
  * Amplitude, ridge longitude, share of the variance and phase of each wave at each step of a chunk, and why one is missing.
  *
- * `angles` are the coefficients' arguments in radians, kept for the speeds.
+ * For the speeds, `paths` holds the coefficients, shape (places, waves, steps, 2), and `angles` their arguments in radians,
+ * shape (places, waves, steps).
  *
  * @param firstRow Row at which the chunk starts, counted over time, level and row of the record.
  */
@@ -30,6 +31,10 @@ export function amplitudeParts(
   const size = rows * waves.length;
   const whole = frame.nTime * frame.nLevel * frame.nRow * waves.length;
   const [amplitude, ridge, share, phase] = PARTS.map(() => partArray(size, whole));
+  // Speeds need each wave of each place with its steps side by side: laid out here, where the numbers are at hand.
+  const places = frame.nLevel * frame.nRow;
+  const steps = rows / places;
+  const paths = new Float64Array(2 * size);
   const angles = new Float64Array(size);
   const reasons = new Uint8Array(size);
   const phaseReasons = new Uint8Array(size);
@@ -37,6 +42,8 @@ export function amplitudeParts(
   let careful = 0;
   for (let r = 0, at = 0; r < rows; r++) {
     const total = variance[r];
+    const step = Math.floor(r / places);
+    let path = (r - step * places) * waves.length * steps + step;
     for (const k of waves) {
       const from = 2 * (r * kept + k);
       const re = c[from];
@@ -44,7 +51,10 @@ export function amplitudeParts(
       const a = waveAmplitude(re, im, k, nLon);
       amplitude[at] = a;
       const angle = Math.atan2(im, re);
-      angles[at] = angle;
+      angles[path] = angle;
+      paths[2 * path] = re;
+      paths[2 * path + 1] = im;
+      path += steps;
       ridge[at] = a === 0 ? Number.NaN : ridgeOfAngle(angle, k);
       share[at] = (isNyquist(k, nLon) ? a * a : (a * a) / 2) / total;
       phase[at] = a === 0 ? Number.NaN : angle / RADIANS_PER_DEGREE;
@@ -57,7 +67,7 @@ export function amplitudeParts(
       at += 1;
     }
   }
-  const made = { amplitude, ridge, share, phase, angles };
+  const made = { amplitude, ridge, share, phase, paths, angles };
   // Where every number is plain, which is the rule, there is nothing to hand over.
   return careful === 0 ? made : { ...made, reasons, phaseReasons, shareReasons };
 }

@@ -60,8 +60,10 @@ export function waveChunk(input: ChunkInput, series: Series, choice: WaveChoice)
   const clim = background === undefined ? undefined : joined(pick(background));
   const subject = choice.ofAnomaly && clim !== undefined ? difference(x, clim) : x;
   const { c, variance } = rowCoefficients(subject, lon, choice.most);
-  const part: Record<string, ChunkPart[string]> = { c, variance };
-  if (choice.band === null || choice.coherent) {
+  const part: Record<string, ChunkPart[string]> = { variance };
+  const isEach = choice.band === null || choice.coherent;
+  if (!isEach || choice.reconstruct !== null || clim !== undefined) part.c = c;
+  if (isEach) {
     const frame = new WaveFrame(series, choice);
     const firstRow = (input.times[0] - series.times[0]) * frame.nLevel * frame.nRow;
     Object.assign(part, amplitudeParts(frame, { c, variance }, firstRow));

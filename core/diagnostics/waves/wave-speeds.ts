@@ -33,51 +33,32 @@ function evenStepOf(days: Float64Array): number | null {
   return step;
 }
 
-/** What speeds are made from: arrays in pieces of whole steps, in the order of time. */
+/** What speeds are made from, chunk by chunk in the order of time. */
 export interface WaveRecord {
-  /** Coefficients, shape (steps, places, waves kept, 2). */
-  readonly c: readonly Float64Array[];
-  /** Their arguments, radians, shape (steps, places, waves of the result). */
+  /** Coefficients, each of shape (places, waves, steps of the chunk, 2). */
+  readonly paths: readonly Float64Array[];
+  /** Their arguments, radians, each of shape (places, waves, steps of the chunk). */
   readonly angles: readonly Float64Array[];
 }
 
-/** The angles of one place, wave by wave with the steps side by side. */
-function gatheredAngles(
+/** All steps of each wave of one place, side by side. @param each Numbers of a step and wave. */
+function gathered(
   record: readonly Float64Array[],
   place: number,
   places: number,
   waves: number,
   nTime: number,
+  each: number,
   into: Float64Array,
 ): void {
-  let t = 0;
-  for (const angles of record)
-    for (let from = place * waves; from < angles.length; from += places * waves, t++)
-      for (let w = 0; w < waves; w++) into[w * nTime + t] = angles[from + w];
-}
-
-/**
- * The coefficients of one place, wave by wave with the steps side by side: the record has them far apart.
- *
- * @param record Coefficients in pieces of whole steps, in the order of time.
- * @param stride Numbers of a step.
- */
-function gathered(
-  record: readonly Float64Array[],
-  place: number,
-  stride: number,
-  kept: number,
-  nTime: number,
-  into: Float64Array,
-): void {
-  let t = 0;
-  for (const c of record) {
-    for (let from = 2 * place * kept; from < c.length; from += stride, t++) {
-      for (let k = 0; k < kept; k++) {
-        into[2 * (k * nTime + t)] = c[from + 2 * k];
-        into[2 * (k * nTime + t) + 1] = c[from + 2 * k + 1];
-      }
+  let at = 0;
+  for (const chunk of record) {
+    const length = chunk.length / (places * waves);
+    for (let w = 0; w < waves; w++) {
+      const from = (place * waves + w) * length;
+      into.set(chunk.subarray(from, from + length), w * nTime * each + at);
     }
+    at += length;
   }
 }
 
@@ -89,8 +70,6 @@ function emptyPath(nTime: number): WavePath {
 export function speedVariables(frame: WaveFrame, record: WaveRecord, notes: string[]): ResultVariable[] {
   const { waves, nLevel, nRow, nTime, choice, series, nLon } = frame;
   const isTime = series.steps.kind === "time";
-  const kept = choice.most + 1;
-  const stride = 2 * nLevel * nRow * kept;
   const size = nLevel * nRow * waves.length;
   const [speed, error, speedMs, lag, ratio] = Array.from({ length: 5 }, () => new Float64Array(size)) as [
     Float64Array,
@@ -108,17 +87,17 @@ export function speedVariables(frame: WaveFrame, record: WaveRecord, notes: stri
   if (!isTime)
     notes.push(`The record steps along "${series.steps.name}", which is no time: there are no phase speeds.`);
   else if (step === null && nTime > 1) notes.push("The steps are not evenly spaced: there is no lag-one speed.");
-  const place = new Float64Array(2 * kept * nTime);
+  const place = new Float64Array(2 * waves.length * nTime);
   const angles = new Float64Array(waves.length * nTime);
   const path = emptyPath(nTime);
   for (let p = 0, at = 0; p < nLevel * nRow; p++) {
-    gathered(record.c, p, stride, kept, nTime, place);
-    gatheredAngles(record.angles, p, nLevel * nRow, waves.length, nTime, angles);
+    gathered(record.paths, p, nLevel * nRow, waves.length, nTime, 2, place);
+    gathered(record.angles, p, nLevel * nRow, waves.length, nTime, 1, angles);
     const metres =
       EARTH_RADIUS * Math.cos((choice.latitudes[p % nRow] as number) * RADIANS_PER_DEGREE) * RADIANS_PER_DEGREE;
     for (let w = 0; w < waves.length; w++) {
       const k = waves[w];
-      const shift = 2 * k * nTime;
+      const shift = 2 * w * nTime;
       // The Nyquist wave has no phase: its crests can only stand on the columns or between them.
       const usable = isTime && !isNyquist(k, nLon);
       if (usable) fillWavePath(path, place, shift, angles, w * nTime, nTime, k);
@@ -171,7 +150,6 @@ export function speedVariables(frame: WaveFrame, record: WaveRecord, notes: stri
 export function driftVariables(frame: WaveFrame, record: WaveRecord, variance: Float64Array): ResultVariable[] {
   const { waves, nLevel, nRow, nTime, choice, series, nLon, days } = frame;
   const isTime = series.steps.kind === "time";
-  const kept = choice.most + 1;
   const places = nLevel * nRow;
   const size = nTime * places * waves.length;
   const speed = frame.array(size);
@@ -183,20 +161,20 @@ export function driftVariables(frame: WaveFrame, record: WaveRecord, variance: F
     while (days[t] - days[from] > choice.driftDays + STEP_TOLERANCE) from += 1;
     firsts[t] = from;
   }
-  const place = new Float64Array(2 * kept * nTime);
+  const place = new Float64Array(2 * waves.length * nTime);
   const angles = new Float64Array(waves.length * nTime);
   const path = emptyPath(nTime);
   const totals = new Float64Array(nTime);
   for (let p = 0; p < places; p++) {
-    gathered(record.c, p, 2 * places * kept, kept, nTime, place);
-    gatheredAngles(record.angles, p, places, waves.length, nTime, angles);
+    gathered(record.paths, p, places, waves.length, nTime, 2, place);
+    gathered(record.angles, p, places, waves.length, nTime, 1, angles);
     for (let t = 0; t < nTime; t++) {
       totals[t] = 0;
       for (let s = firsts[t]; s <= t; s++) totals[t] += variance[s * places + p];
     }
     waves.forEach((k, w) => {
       const usable = isTime && !isNyquist(k, nLon);
-      if (usable) fillWavePath(path, place, 2 * k * nTime, angles, w * nTime, nTime, k);
+      if (usable) fillWavePath(path, place, 2 * w * nTime, angles, w * nTime, nTime, k);
       for (let t = 0; t < nTime; t++) {
         let drift = usable ? phaseDrift(path, days, firsts[t], t + 1, k, choice.floor) : NOTHING;
         let own = 0;
