@@ -11,6 +11,12 @@ const DAYS_PER: readonly (readonly [spelling: RegExp, days: number])[] = [
   [/^(msec|msecs|millisecond|milliseconds|ms)$/, 1 / 86_400_000],
 ];
 
+/** Days per unit of a span of time (`hours`, `days` …); null for months, years and what is no unit of time. */
+export function daysPerUnit(unit: string): number | null {
+  const plain = unit.trim().toLowerCase();
+  return DAYS_PER.find(([spelling]) => spelling.test(plain))?.[1] ?? null;
+}
+
 export interface TimeUnits {
   /** Days since 1970-01-01 of the reference moment. */
   readonly origin: number;
@@ -37,9 +43,8 @@ export function timeUnits(text: string, calendar: Calendar): TimeUnits {
       "MetadataError",
       `time units "${text}" cannot be read; they should look like "days since 1900-01-01 00:00:00".`,
     );
-  const unit = (match[1] as string).toLowerCase();
-  const daysPerUnit = DAYS_PER.find(([spelling]) => spelling.test(unit))?.[1];
-  if (daysPerUnit === undefined)
+  const perUnit = daysPerUnit(match[1] as string);
+  if (perUnit === null)
     throw new DataError(
       "MetadataError",
       `time units "${text}": "${match[1]}" has no fixed length here; days, hours, minutes and seconds have.`,
@@ -50,5 +55,5 @@ export function timeUnits(text: string, calendar: Calendar): TimeUnits {
   const origin =
     daysOf({ year: part(2), month: part(3), day: part(4), hour: part(5), minute: part(6), second: part(7) }, calendar) -
     shift;
-  return { origin, daysPerUnit };
+  return { origin, daysPerUnit: perUnit };
 }

@@ -3,7 +3,7 @@ import type { Correction, FieldDescription, FileContents, LeftOut, OpenFile } fr
 import type { StoredVariable, VariableStore } from "../variable-store.ts";
 import { longName, textOf } from "./attributes.ts";
 import { decodingOf } from "./decoding.ts";
-import { AxisShelf, fieldLayout } from "./field-layout.ts";
+import { AxisShelf, fieldLayouts } from "./field-layout.ts";
 import { fieldSlab, type ReadableField } from "./field-slab.ts";
 import { recognition } from "./quantity-of.ts";
 
@@ -22,38 +22,36 @@ function servingNames(store: VariableStore): ReadonlySet<string> {
   return new Set(names);
 }
 
-async function readable(
+async function readableFields(
   store: VariableStore,
   variable: StoredVariable,
   shelf: AxisShelf,
   correction: Correction | undefined,
-): Promise<ReadableField> {
-  const layout = await fieldLayout(store, variable, shelf, correction);
+): Promise<ReadableField[]> {
+  const layouts = await fieldLayouts(store, variable, shelf, correction);
   const known = recognition(variable, correction);
   if ("refused" in known) throw new DataError("UnitError", known.refused);
   const packing = decodingOf(variable);
   const { factor, offset } = known.conversion;
-  const description: FieldDescription = {
-    key: `${store.name}/${variable.name}`,
-    file: store.name,
-    variable: variable.name,
-    longName: longName(variable),
-    quantity: known.quantity,
-    why: known.why,
-    unitsInFile: known.unitsInFile,
-    units: known.conversion.units,
-    grid: layout.grid,
-    steps: layout.steps,
-    levels: layout.levels,
-    members: null,
-    reference: null,
-  };
-  return {
-    description,
-    variable,
-    layout,
-    decoding: { ...packing, scale: packing.scale * factor, offset: packing.offset * factor + offset },
-  };
+  const decoding = { ...packing, scale: packing.scale * factor, offset: packing.offset * factor + offset };
+  return layouts.map((layout) => {
+    const description: FieldDescription = {
+      key: `${store.name}/${variable.name}${layout.suffix}`,
+      file: store.name,
+      variable: variable.name,
+      longName: longName(variable),
+      quantity: known.quantity,
+      why: known.why,
+      unitsInFile: known.unitsInFile,
+      units: known.conversion.units,
+      grid: layout.grid,
+      steps: layout.steps,
+      levels: layout.levels,
+      members: layout.members,
+      reference: layout.reference,
+    };
+    return { description, variable, layout, decoding };
+  });
 }
 
 /** What a store holds under the CF conventions, and slabs of it. Variables that are no usable fields are listed with the reason. */
@@ -71,9 +69,10 @@ export async function openCfFile(
     if (servesOthers(variable, served)) continue;
     const correction = corrections.find((said) => said.file === store.name && said.variable === variable.name);
     try {
-      const field = await readable(store, variable, shelf, correction);
-      fields.set(field.description.key, field);
-      for (const note of field.layout.notes) notes.add(note);
+      for (const field of await readableFields(store, variable, shelf, correction)) {
+        fields.set(field.description.key, field);
+        for (const note of field.layout.notes) notes.add(note);
+      }
     } catch (error) {
       if (!(error instanceof DataError)) throw error;
       leftOut.push({ file: store.name, variable: variable.name, why: error.message });

@@ -1,17 +1,30 @@
-import { isTimeUnits } from "../../field/time-units.ts";
+import { daysPerUnit, isTimeUnits } from "../../field/time-units.ts";
 import { conversion } from "../../units/units.ts";
 import type { StoredVariable } from "../variable-store.ts";
 import { textOf } from "./attributes.ts";
 
-export type DimensionRole = "latitude" | "longitude" | "level" | "time" | "other";
+/** `lead` is the time since a forecast's start, `start` the start itself. */
+export type DimensionRole = "latitude" | "longitude" | "level" | "time" | "lead" | "start" | "member" | "other";
 
+const STANDARD_NAMES: Readonly<Record<string, DimensionRole>> = {
+  latitude: "latitude",
+  longitude: "longitude",
+  air_pressure: "level",
+  time: "time",
+  forecast_period: "lead",
+  forecast_reference_time: "start",
+  realization: "member",
+};
 const LAT_UNITS = /^degrees?_?n(orth)?$/i;
 const LON_UNITS = /^degrees?_?e(ast)?$/i;
 const NAMES: readonly (readonly [RegExp, DimensionRole])[] = [
   [/^(lat|latitude|latitudes|nav_lat|lat_\d+|g\d_lat_\d+)$/i, "latitude"],
   [/^(lon|longitude|longitudes|nav_lon|lon_\d+|g\d_lon_\d+)$/i, "longitude"],
-  [/^(time|times|valid_time|initial_time\d*_hours|t)$/i, "time"],
+  [/^(forecast_reference_time|reference_time|reftime|init_time|initial_time|initial_time\d*_hours)$/i, "start"],
+  [/^(step|steps|lead|leads|lead_?time|forecast_period|forecast_hour|forecast_time\d*|prediction_timedelta)$/i, "lead"],
+  [/^(time|times|valid_time|t)$/i, "time"],
   [/^(lev|level|levels|plev|plev\d+|pressure|pressure_level|isobaric\w*|lv_isbl\d*|p)$/i, "level"],
+  [/^(member|members|realization|realisation|number|ens|ensemble|ensemble\d+|ensemble_member)$/i, "member"],
 ];
 
 /**
@@ -21,18 +34,19 @@ const NAMES: readonly (readonly [RegExp, DimensionRole])[] = [
  */
 export function dimensionRole(name: string, coordinate: StoredVariable | undefined): DimensionRole {
   const attributes = coordinate?.attributes ?? {};
-  const standard = textOf(attributes, "standard_name");
-  if (standard === "latitude" || standard === "longitude" || standard === "time") return standard;
-  if (standard === "air_pressure") return "level";
+  const standard = STANDARD_NAMES[textOf(attributes, "standard_name") ?? ""];
+  if (standard !== undefined) return standard;
+  const byName = NAMES.find(([pattern]) => pattern.test(name))?.[1];
   const units = textOf(attributes, "units") ?? "";
   if (LAT_UNITS.test(units)) return "latitude";
   if (LON_UNITS.test(units)) return "longitude";
-  if (isTimeUnits(units)) return "time";
+  if (isTimeUnits(units)) return byName === "start" ? "start" : "time";
+  if (byName === "lead" && daysPerUnit(units) !== null) return "lead";
   if (units !== "" && conversion("pressure", units) !== null) return "level";
   const axis = textOf(attributes, "axis")?.toUpperCase();
   if (axis === "Z" || textOf(attributes, "positive") !== undefined) return "level";
-  const byName = NAMES.find(([pattern]) => pattern.test(name))?.[1];
-  // A "time" whose coordinate has units but none with "since" is a record, not a time.
-  if (byName === "time" && !isTimeUnits(units)) return "other";
+  if (axis === "E") return "member";
+  // A time whose coordinate has no "since" in its units is a record, not a time; a step without a unit of time is none.
+  if (byName === "time" || byName === "start" || byName === "lead") return "other";
   return byName ?? "other";
 }

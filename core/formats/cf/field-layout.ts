@@ -4,6 +4,8 @@ import type { Correction } from "../dataset.ts";
 import type { StoredVariable, VariableStore } from "../variable-store.ts";
 import { textOf } from "./attributes.ts";
 import { type DimensionRole, dimensionRole } from "./dimension-role.ts";
+import { memberAxis } from "./ensemble-axis.ts";
+import { forecastSteps, startText, startVariable } from "./forecast-steps.ts";
 import { gridOf, type OrderedAxis, orderedColumns, orderedRows } from "./horizontal.ts";
 import { levelAxis, statedLevel } from "./level-axis.ts";
 import { axisValues, recordAxis, SINGLE_STEP, timeAxis } from "./step-axis.ts";
@@ -15,10 +17,19 @@ export interface FieldLayout {
   readonly columns: OrderedAxis;
   readonly steps: StepAxis;
   readonly levels: Levels;
+  readonly members: readonly number[] | null;
+  /** Start of the forecast, days; null where there is none. */
+  readonly reference: number | null;
   readonly stepDim: number;
   readonly levelDim: number;
+  readonly memberDim: number;
   readonly latDim: number;
   readonly lonDim: number;
+  /** The dimension of the forecasts' starts and which of them this field is. */
+  readonly startDim: number;
+  readonly startIndex: number;
+  /** Set apart from the variable's other fields by this in the key; "" where there is only one. */
+  readonly suffix: string;
   readonly notes: readonly string[];
 }
 
@@ -55,36 +66,120 @@ function curvilinear(store: VariableStore, variable: StoredVariable): boolean {
   );
 }
 
+function horizontalDims(
+  store: VariableStore,
+  variable: StoredVariable,
+  roles: readonly DimensionRole[],
+): { latDim: number; lonDim: number } {
+  const latDim = roles.indexOf("latitude");
+  const lonDim = roles.indexOf("longitude");
+  if (latDim >= 0 && lonDim >= 0) return { latDim, lonDim };
+  if (curvilinear(store, variable))
+    throw new DataError(
+      "GridError",
+      "its grid is curvilinear (latitude and longitude have two dimensions each); regrid it to rows and columns of latitude and longitude",
+    );
+  throw new DataError(
+    "GridError",
+    `it has no ${latDim < 0 ? "latitude" : "longitude"} axis (dimensions ${variable.dims.join(", ") || "none"})`,
+  );
+}
+
+interface Stepping {
+  readonly steps: StepAxis;
+  readonly reference: number | null;
+  readonly startIndex: number;
+  readonly suffix: string;
+}
+
 /**
- * Find the axes of a variable.
+ * What a variable's own roles make of its step and start dimensions.
+ *
+ * A time beside a lead is the forecast's start: what steps is the lead, and each start is a field of its own.
+ */
+function steppingDims(roles: readonly DimensionRole[]): { stepDim: number; startDim: number } {
+  const lead = roles.indexOf("lead");
+  const start = roles.indexOf("start");
+  const time = roles.indexOf("time");
+  if (lead >= 0) return { stepDim: lead, startDim: start >= 0 ? start : time };
+  if (time >= 0) return { stepDim: time, startDim: start };
+  return { stepDim: start, startDim: -1 };
+}
+
+async function steppings(
+  store: VariableStore,
+  variable: StoredVariable,
+  shelf: AxisShelf,
+  roles: readonly DimensionRole[],
+  stepDim: number,
+  startDim: number,
+): Promise<Stepping[]> {
+  const one = (steps: StepAxis, reference: number | null = null): Stepping[] => [
+    { steps, reference, startIndex: 0, suffix: "" },
+  ];
+  const coordinateOf = (d: number): StoredVariable | undefined =>
+    d < 0 ? undefined : shelf.coordinate(variable.dims[d] as string);
+  const single = startVariable(store, variable);
+  if (stepDim < 0) {
+    const reference = single === undefined ? null : (await timeAxis(store, single)).values[0];
+    return one(SINGLE_STEP, reference ?? null);
+  }
+  const name = variable.dims[stepDim] as string;
+  const coordinate = coordinateOf(stepDim);
+  if (roles[stepDim] === "lead" && coordinate !== undefined) {
+    const start = startDim >= 0 ? coordinateOf(startDim) : single;
+    if (start === undefined)
+      throw new DataError(
+        "MetadataError",
+        `its steps (${name}) count from a forecast's start that the file does not tell`,
+      );
+    const forecasts = await shelf.once(`forecast ${start.name} ${name}`, () => forecastSteps(store, start, coordinate));
+    if (forecasts.length === 0) throw new DataError("ShapeError", `its ${start.name} axis holds no start`);
+    return forecasts.map(({ steps, reference, index }) => ({
+      steps,
+      reference,
+      startIndex: index,
+      suffix: forecasts.length === 1 ? "" : `@${startText(reference, steps.calendar)}`,
+    }));
+  }
+  const isTime = (roles[stepDim] === "time" || roles[stepDim] === "start") && coordinate !== undefined;
+  const steps = await shelf.once(`step ${name}`, () =>
+    isTime ? timeAxis(store, coordinate) : recordAxis(store, name, variable.shape[stepDim] as number, coordinate),
+  );
+  if (steps.values.length === 0) throw new DataError("ShapeError", `its ${name} axis holds no step`);
+  const start = startDim >= 0 ? coordinateOf(startDim) : isTime ? single : undefined;
+  if (start === undefined) return one(steps);
+  const starts = await shelf.once(`starts ${start.name}`, () => timeAxis(store, start));
+  // Valid times beside several starts: each start is a forecast of its own over the same times.
+  return [...starts.values].map((reference, startIndex) => ({
+    steps,
+    reference,
+    startIndex,
+    suffix: starts.values.length === 1 ? "" : `@${startText(reference, starts.calendar)}`,
+  }));
+}
+
+/**
+ * Find the axes of a variable: one field, or one for each forecast start that it holds.
  *
  * @throws DataError whose message is the reason why the variable is left out.
  */
-export async function fieldLayout(
+export async function fieldLayouts(
   store: VariableStore,
   variable: StoredVariable,
   shelf: AxisShelf,
   correction: Correction | undefined,
-): Promise<FieldLayout> {
+): Promise<FieldLayout[]> {
   const roles: DimensionRole[] = variable.dims.map((name) => dimensionRole(name, shelf.coordinate(name)));
-  const latDim = roles.indexOf("latitude");
-  const lonDim = roles.indexOf("longitude");
-  if (latDim < 0 || lonDim < 0) {
-    if (curvilinear(store, variable))
-      throw new DataError(
-        "GridError",
-        "its grid is curvilinear (latitude and longitude have two dimensions each); regrid it to rows and columns of latitude and longitude",
-      );
-    throw new DataError(
-      "GridError",
-      `it has no ${latDim < 0 ? "latitude" : "longitude"} axis (dimensions ${variable.dims.join(", ") || "none"})`,
-    );
-  }
+  const { latDim, lonDim } = horizontalDims(store, variable, roles);
   const levelDim = roles.indexOf("level");
-  let stepDim = roles.indexOf("time");
+  const memberDim = roles.indexOf("member");
+  const dims = steppingDims(roles);
+  let { stepDim } = dims;
+  const { startDim } = dims;
   const rest = variable.dims
     .map((_, d) => d)
-    .filter((d) => ![latDim, lonDim, levelDim, stepDim].includes(d) && variable.shape[d] !== 1);
+    .filter((d) => ![latDim, lonDim, levelDim, memberDim, stepDim, startDim].includes(d) && variable.shape[d] !== 1);
   if (stepDim < 0 && rest.length === 1) stepDim = rest.pop() as number;
   if (rest.length > 0) {
     const words = rest.map((d) => `${variable.dims[d]} of ${variable.shape[d]}`).join(", ");
@@ -102,7 +197,8 @@ export async function fieldLayout(
   };
   const latitude = axis(latDim);
   const longitude = axis(lonDim);
-  if ([latDim, lonDim, levelDim].some((d) => variable.shape[d] === 0)) throw new DataError("ShapeError", "it is empty");
+  if ([latDim, lonDim, levelDim, memberDim].some((d) => variable.shape[d] === 0))
+    throw new DataError("ShapeError", "it is empty");
   const rows = orderedRows(
     await shelf.once(`lat ${latitude.name}`, () => axisValues(store, latitude)),
     `${store.name}, ${latitude.name}`,
@@ -111,23 +207,29 @@ export async function fieldLayout(
     await shelf.once(`lon ${longitude.name}`, () => axisValues(store, longitude)),
     `${store.name}, ${longitude.name}`,
   );
-  let steps = SINGLE_STEP;
-  if (stepDim >= 0) {
-    const name = variable.dims[stepDim] as string;
-    const coordinate = shelf.coordinate(name);
-    steps = await shelf.once(`step ${name}`, () =>
-      roles[stepDim] === "time" && coordinate !== undefined
-        ? timeAxis(store, coordinate)
-        : recordAxis(store, name, variable.shape[stepDim] as number, coordinate),
-    );
-    if (steps.values.length === 0) throw new DataError("ShapeError", `its ${name} axis holds no step`);
-  }
   let levels: Levels;
   if (levelDim >= 0) {
     const name = variable.dims[levelDim] as string;
     levels = await shelf.once(`level ${name}`, () => levelAxis(store, name, shelf.coordinate(name)));
   } else
     levels = correction?.level !== undefined ? Float64Array.of(correction.level) : await statedLevel(store, variable);
+  let members: readonly number[] | null = null;
+  if (memberDim >= 0) {
+    const name = variable.dims[memberDim] as string;
+    const length = variable.shape[memberDim] as number;
+    members = await shelf.once(`member ${name}`, () => memberAxis(store, name, length, shelf.coordinate(name)));
+  }
   const notes = [rows.note, columns.note].filter((note) => note !== null);
-  return { grid: gridOf(rows, columns), rows, columns, steps, levels, stepDim, levelDim, latDim, lonDim, notes };
+  const shared = { grid: gridOf(rows, columns), rows, columns, levels, members, notes };
+  const found = await steppings(store, variable, shelf, roles, stepDim, startDim);
+  return found.map((stepping) => ({
+    ...shared,
+    ...stepping,
+    stepDim,
+    levelDim,
+    memberDim,
+    startDim,
+    latDim,
+    lonDim,
+  }));
 }

@@ -30,6 +30,10 @@ function checkRequest(field: ReadableField, request: SlabRequest, nTime: number,
     Number.isInteger(from) && Number.isInteger(to) && from >= 0 && from < to && to <= size;
   // A field without levels has nothing to choose from; a list for it is ignored.
   const levels = field.description.levels === null ? [] : (request.levels ?? [0]);
+  const nMember = field.description.members?.length ?? 1;
+  const member = request.member ?? 0;
+  if (!(Number.isInteger(member) && member >= 0 && member < nMember))
+    throw new DataError("ShapeError", `${field.description.key} has no member number ${member}; it has ${nMember}.`);
   if (
     !range(request.times, nTime) ||
     !range(request.rows ?? [0, nLat], nLat) ||
@@ -55,6 +59,7 @@ export async function fieldSlab(store: VariableStore, field: ReadableField, requ
   const nLevelAll = description.levels?.length ?? 1;
   checkRequest(field, request, description.steps.values.length, nLevelAll, nLatAll);
   const [t0, t1] = request.times;
+  const member = request.member ?? 0;
   const [r0, r1] = request.rows ?? [0, nLatAll];
   const levels = levelDim < 0 ? [0] : (request.levels ?? Array.from({ length: nLevelAll }, (_, i) => i));
   const nTime = t1 - t0;
@@ -72,6 +77,8 @@ export async function fieldSlab(store: VariableStore, field: ReadableField, requ
       count[dim] = n;
     };
     along(stepDim, t0, nTime);
+    along(layout.memberDim, member, 1);
+    along(layout.startDim, layout.startIndex, 1);
     along(levelDim, run.from, run.count);
     along(latDim, firstRow, nLat);
     along(lonDim, firstColumn, nLon);

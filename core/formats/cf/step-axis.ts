@@ -1,7 +1,7 @@
 import { DataError } from "../../errors.ts";
 import type { StepAxis } from "../../field/axes.ts";
 import { calendarNamed, isDateable } from "../../field/calendar.ts";
-import { timeUnits } from "../../field/time-units.ts";
+import { daysPerUnit, timeUnits } from "../../field/time-units.ts";
 import type { StoredVariable, VariableStore } from "../variable-store.ts";
 import { textOf } from "./attributes.ts";
 import { decodeInPlace, decodingOf } from "./decoding.ts";
@@ -37,6 +37,24 @@ export async function timeAxis(store: VariableStore, variable: StoredVariable): 
       );
   }
   return { kind: "time", name: variable.name, values, calendar };
+}
+
+/**
+ * Spans since a forecast's start, days, increasing.
+ *
+ * @throws MetadataError for units that are no span of time, or spans that do not increase.
+ */
+export async function leadDays(store: VariableStore, variable: StoredVariable): Promise<Float64Array> {
+  const where = `${store.name}, ${variable.name}`;
+  const units = textOf(variable.attributes, "units") ?? "";
+  const perUnit = daysPerUnit(units);
+  if (perUnit === null)
+    throw new DataError("MetadataError", `${where}: forecast steps in "${units}" cannot be read; hours or days can.`);
+  const values = (await axisValues(store, variable)).map((value) => value * perUnit);
+  const bad = values.findIndex((value, i) => !Number.isFinite(value) || (i > 0 && value <= values[i - 1]));
+  if (bad >= 0)
+    throw new DataError("MetadataError", `${where}: forecast steps do not increase at step ${bad + 1}. Sort the file.`);
+  return values;
 }
 
 /** Steps without numbers of their own take memory for each: only a damaged header promises more. */
