@@ -2,7 +2,7 @@ import { CATALOGUE, diagnosticOf } from "../../core/recipe/catalogue.ts";
 import { recipeSchema } from "../../core/recipe/schema.ts";
 import { type BatchTask, batchTask } from "./arguments.ts";
 import { diagnosticHelp, generalHelp } from "./help-text.ts";
-import { fileListing, listingJson } from "./listing.ts";
+import { fileListing, listingJson, recordListing } from "./listing.ts";
 import { closeAll, openFiles, runFromCommand } from "./recipe-run.ts";
 
 /** What the command touches besides files. */
@@ -31,7 +31,9 @@ async function answer(task: BatchTask, io: BatchIo): Promise<number> {
       const files = await openFiles(task.files, []);
       const contents = files.map((file) => file.contents);
       await closeAll(files);
-      io.stdout(`${task.json ? listingJson(contents) : contents.map(fileListing).join("\n\n")}\n`);
+      const joined = recordListing(contents);
+      const text = contents.map(fileListing).join("\n\n") + (joined === "" ? "" : `\n\njoined:\n${joined}`);
+      io.stdout(`${task.json ? listingJson(contents) : text}\n`);
       return 0;
     }
     case "run":

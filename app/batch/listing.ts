@@ -1,5 +1,7 @@
+import { isoText } from "../../core/field/calendar.ts";
 import { stepText } from "../../core/field/step-text.ts";
 import type { FieldDescription, FileContents } from "../../core/formats/dataset.ts";
+import { recordFields } from "../../core/formats/record/record-fields.ts";
 
 function span(values: Float64Array, digits: number): string {
   const text = (value: number): string => String(Number(value.toFixed(digits)));
@@ -7,7 +9,7 @@ function span(values: Float64Array, digits: number): string {
 }
 
 function fieldListing(field: FieldDescription): string {
-  const { grid, steps, levels } = field;
+  const { grid, steps, levels, members, reference } = field;
   const n = steps.values.length;
   const ends =
     n === 0 ? "" : n === 1 ? `: ${stepText(steps, 0)}` : `: ${stepText(steps, 0)} … ${stepText(steps, n - 1)}`;
@@ -19,6 +21,8 @@ function fieldListing(field: FieldDescription): string {
     `    ${field.longName === "" ? field.variable : field.longName}, ${units}`,
     `    ${field.quantity ?? "not recognised"}: ${field.why}`,
     `    ${n} ${what}${ends}`,
+    ...(reference === null ? [] : [`    forecast from ${isoText(reference, steps.calendar)}`]),
+    ...(members === null ? [] : [`    ${members.length} members: ${members.join(", ")}`]),
     levels === null ? "    no level stated" : `    ${levels.length} levels, hPa: ${Array.from(levels).join(", ")}`,
     `    ${grid.lat.length} rows ${span(grid.lat, 4)} °N, ${grid.lon.length} columns ${span(grid.lon, 4)} °E${circle}`,
   ].join("\n");
@@ -37,8 +41,23 @@ export function fileListing(contents: FileContents): string {
   return lines.join("\n");
 }
 
+/** What several files make together, as text; empty where nothing is joined. */
+export function recordListing(files: readonly FileContents[]): string {
+  const { fields, notes } = recordFields(files);
+  return [...notes]
+    .map(([key, words]) => {
+      const field = fields.find((one) => one.key === key);
+      const listed = field === undefined ? `  ${key}` : fieldListing(field);
+      return `${listed}\n${words.map((note) => `    ${note}`).join("\n")}`;
+    })
+    .join("\n");
+}
+
 /** The same as plain JSON: typed arrays as lists. */
 export function listingJson(files: readonly FileContents[]): string {
-  const plain = (_key: string, value: unknown): unknown => (value instanceof Float64Array ? Array.from(value) : value);
-  return JSON.stringify({ files }, plain, 2);
+  const plain = (_key: string, value: unknown): unknown =>
+    value instanceof Float64Array || value instanceof Int32Array ? Array.from(value) : value;
+  const { fields, notes } = recordFields(files);
+  const records = [...notes].map(([key, words]) => ({ ...fields.find((one) => one.key === key), notes: words }));
+  return JSON.stringify({ files, records }, plain, 2);
 }

@@ -2,7 +2,8 @@ import type { FittedBackground } from "../../core/background/fit.ts";
 import type { BackgroundSpec } from "../../core/background/spec.ts";
 import { DataError } from "../../core/errors.ts";
 import type { IndexRange } from "../../core/field/axes.ts";
-import type { Correction, FieldDescription, FileContents, OpenFile } from "../../core/formats/dataset.ts";
+import type { Correction, FieldDescription, FieldReader, FileContents, OpenFile } from "../../core/formats/dataset.ts";
+import { OpenRecords } from "../../core/formats/record/open-records.ts";
 import { BackgroundPasses, passJobs } from "../../core/recipe/background-passes.ts";
 import type { Crew } from "../../core/recipe/crew.ts";
 import type { CrewFile } from "../../core/recipe/crew-line.ts";
@@ -57,6 +58,7 @@ export class DeskService implements Desk {
   readonly #frames = new FrameCache();
   readonly #tasks = new Tasks();
   #passes = new BackgroundPasses();
+  #open = new OpenRecords([]);
   #counter = 0;
 
   constructor(parts: DeskParts) {
@@ -99,16 +101,16 @@ export class DeskService implements Desk {
   }
 
   async frame(place: FieldPlace, time: number, background: BackgroundSpec): Promise<Frame> {
-    const { file, field } = this.#place(place);
+    const { read, field } = this.#place(place);
     if (!(Number.isInteger(time) && time >= 0 && time < field.steps.values.length))
       throw new DataError("ShapeError", `${place.key} has no step ${time}; it has ${field.steps.values.length}.`);
-    const frame = this.#frames.frame(file, field, place, time);
+    const frame = this.#frames.frame(read, field, place, time);
     const fitted = this.#fittedAlready(place, field, background);
     const values = frame.then((held) => held.slice());
     if (fitted === null && background.kind !== "running-mean") return { values: await values, background: null };
     const rows: IndexRange = [0, field.grid.lat.length];
     const both = await slabWithBackground(
-      file,
+      read,
       field,
       { times: [time, time + 1], levels: this.#levels(place, field), rows },
       background,
@@ -125,9 +127,9 @@ export class DeskService implements Desk {
     task: number,
   ): Promise<Ribbon> {
     return this.#tasks.run(task, async (running) => {
-      const { file, field } = this.#place(place);
+      const { read, field } = this.#place(place);
       const fitted = await this.#fitted(place, background, running);
-      return bandRibbon(file, field, this.#levels(place, field), band, times, background, fitted, running);
+      return bandRibbon(read, field, this.#levels(place, field), band, times, background, fitted, running);
     });
   }
 
@@ -170,7 +172,9 @@ export class DeskService implements Desk {
     this.#passes.forget(file);
   }
 
+  /** What is open has changed: what is joined of it, too. */
   #tellCrew(): void {
+    this.#open = new OpenRecords([...this.#held.values()].map(({ file }) => file));
     this.#parts.crew.setFiles(
       [...this.#held.values()].map(({ id, source, corrections }) => ({ id, source: { source, corrections } })),
     );
@@ -182,16 +186,12 @@ export class DeskService implements Desk {
     return held;
   }
 
-  /** @throws NotFoundError for a field or a level that is not there. */
-  #place(place: FieldPlace): { file: OpenFile; field: FieldDescription } {
-    for (const { file } of this.#held.values()) {
-      const field = file.contents.fields.find((candidate) => candidate.key === place.key);
-      if (field === undefined) continue;
-      if (place.level !== 0 && field.levels?.[place.level] === undefined)
-        throw new DataError("NotFoundError", `${place.key} has no level number ${place.level}.`);
-      return { file, field };
-    }
-    throw new DataError("NotFoundError", `${place.key} is not open. Open its file again.`);
+  /** @throws NotFoundError for a field, a level or a member that is not there. */
+  #place(place: FieldPlace): { read: FieldReader; field: FieldDescription } {
+    const field = this.#open.field(place.key);
+    if (place.level !== 0 && field.levels?.[place.level] === undefined)
+      throw new DataError("NotFoundError", `${place.key} has no level number ${place.level}.`);
+    return { read: this.#open.reader(field, place.member), field };
   }
 
   #levels({ level }: FieldPlace, field: FieldDescription): readonly number[] | null {
@@ -199,17 +199,19 @@ export class DeskService implements Desk {
   }
 
   #fittedAlready(place: FieldPlace, field: FieldDescription, spec: BackgroundSpec): FittedBackground | null {
-    return this.#passes.held(field, field.levels === null ? null : place.level, [0, field.grid.lat.length], spec);
+    const of = { field, member: place.member };
+    return this.#passes.held(of, field.levels === null ? null : place.level, [0, field.grid.lat.length], spec);
   }
 
   async #fitted(place: FieldPlace, spec: BackgroundSpec, task: Task): Promise<FittedBackground | null> {
     const { field } = this.#place(place);
     const rows: IndexRange = [0, field.grid.lat.length];
     const level = field.levels === null ? null : place.level;
-    const steps = passJobs(field, level, rows, spec).length;
+    const of = { field, member: place.member };
+    const steps = passJobs(of, level, rows, spec).length;
     const started = Date.now();
     let done = 0;
-    return this.#passes.fitted(field, [level], rows, rows, spec, this.#parts.crew, task.signal, () => {
+    return this.#passes.fitted(of, [level], rows, rows, spec, this.#parts.crew, task.signal, () => {
       done += 1;
       const seconds = (Date.now() - started) / 1000;
       task.report("Fitting the background", done / steps, (seconds * (steps - done)) / done);

@@ -24,6 +24,8 @@ export interface FieldPlace {
   readonly key: string;
   /** Index into the field's levels; 0 on a field without levels. */
   readonly level: number;
+  /** Number of the member; null on a field without members. */
+  readonly member: number | null;
 }
 
 export interface Frame {

@@ -2,7 +2,7 @@ import type { FittedBackground } from "../../core/background/fit.ts";
 import type { BackgroundSpec } from "../../core/background/spec.ts";
 import { DataError, throwIfCancelled } from "../../core/errors.ts";
 import type { IndexRange } from "../../core/field/axes.ts";
-import type { FieldDescription, OpenFile } from "../../core/formats/dataset.ts";
+import type { FieldDescription, FieldReader } from "../../core/formats/dataset.ts";
 import { rowsOfBand, rowWeights } from "../../core/grid/rows.ts";
 import { slabWithBackground } from "../../core/recipe/slab-background.ts";
 import type { Ribbon } from "./desk.ts";
@@ -42,7 +42,7 @@ export function bandMeans(data: Float64Array, weights: Float64Array, nLon: numbe
  * @throws GridError if the band holds no row; ShapeError for steps outside the record; Cancelled.
  */
 export async function bandRibbon(
-  file: OpenFile,
+  read: FieldReader,
   field: FieldDescription,
   levels: readonly number[] | null,
   band: readonly [number, number],
@@ -68,7 +68,7 @@ export async function bandRibbon(
     throwIfCancelled(task.signal);
     const end = Math.min(to, at + steps);
     const request = { times: [at, end] as const, levels, rows };
-    const both = await slabWithBackground(file, field, request, background, fitted ?? undefined);
+    const both = await slabWithBackground(read, field, request, background, fitted ?? undefined);
     values.set(bandMeans(both.slab.data, weights, lon.length), (at - from) * lon.length);
     if (both.background !== null) {
       means ??= new Float32Array(values.length);

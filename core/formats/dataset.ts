@@ -19,10 +19,31 @@ export interface FieldDescription {
   readonly grid: Grid;
   readonly steps: StepAxis;
   readonly levels: Levels;
+  /** True where the user said that it is never part of a record with others. */
+  readonly apart?: boolean;
   /** Numbers of an ensemble's members as the file gives them; null on a field without members. */
   readonly members: readonly number[] | null;
   /** Start of the forecast that all steps belong to, days as `steps` counts them; null for analyses and records. */
   readonly reference: number | null;
+  /** What a record of several files, or of several variables, is put together from; absent on a field that stands alone. */
+  readonly parts?: readonly FieldPart[];
+}
+
+/** A field that makes part of a record, and where its own steps, levels and members stand in it. */
+export interface FieldPart {
+  readonly key: string;
+  readonly file: string;
+  readonly variable: string;
+  /** Own index → index in the record; increasing. */
+  readonly steps: Int32Array;
+  /** Own index → index in the record; one entry on a field without levels. */
+  readonly levels: Int32Array;
+  readonly members: Int32Array;
+}
+
+/** Names of the files that a field is read from. */
+export function filesOf({ file, parts }: FieldDescription): readonly string[] {
+  return parts === undefined ? [file] : [...new Set(parts.map((part) => part.file))];
 }
 
 /** A variable that is no usable field, and why. */
@@ -40,6 +61,8 @@ export interface Correction {
   readonly units?: string;
   /** hPa, for a variable that has no level axis. */
   readonly level?: number;
+  /** True: it is a field of its own, never part of a record with others. */
+  readonly apart?: boolean;
 }
 
 export interface FileContents {
@@ -66,6 +89,9 @@ export interface SlabRequest {
   /** Memory of an earlier slab that is no longer needed: used for this one where it has just the size. */
   readonly into?: Float64Array | undefined;
 }
+
+/** Reads slabs of one field and member. */
+export type FieldReader = (request: Omit<SlabRequest, "member">) => Promise<Slab>;
 
 /** An open file: what it holds, and slabs of it in SI units, south → north, west → east. */
 export interface OpenFile {

@@ -4,7 +4,7 @@ import type { BackgroundSpec } from "../background/spec.ts";
 import type { Series } from "../diagnostics/entry.ts";
 import type { CancelSignal } from "../errors.ts";
 import type { IndexRange } from "../field/axes.ts";
-import type { FieldDescription } from "../formats/dataset.ts";
+import { type FieldDescription, filesOf } from "../formats/dataset.ts";
 import { chunkCuts } from "./chunk-cuts.ts";
 import type { ChunkJob, Crew } from "./crew.ts";
 import { jobParts } from "./job-run.ts";
@@ -12,7 +12,15 @@ import { jobParts } from "./job-run.ts";
 /** Index of the level, or null on a field without levels. */
 type LevelIndex = number | null;
 
+/** One member of a field; `member` is its number, null on a field without members. */
+export interface MemberField {
+  readonly field: FieldDescription;
+  readonly member: number | null;
+}
+
 interface Pass {
+  /** Files that it was made from. */
+  readonly files: readonly string[];
   readonly rows: IndexRange;
   readonly fitted: FittedBackground;
 }
@@ -31,7 +39,7 @@ function seriesOf(field: FieldDescription, level: LevelIndex, spec: BackgroundSp
 
 /** The jobs of one pass over the record. Cut by whole fields, so that a row's background does not depend on which rows are wanted. */
 export function passJobs(
-  field: FieldDescription,
+  { field, member }: MemberField,
   level: LevelIndex,
   rows: IndexRange,
   spec: BackgroundSpec,
@@ -44,6 +52,7 @@ export function passJobs(
     series: seriesOf(field, level, spec),
     fields: { field: field.key },
     levelIndices: level === null ? null : [level],
+    member,
     times,
     rows,
     halo: 0,
@@ -71,26 +80,25 @@ function assembled(fits: readonly FittedBackground[], rows: IndexRange, nLon: nu
 export class BackgroundPasses {
   readonly #passes = new Map<string, Pass>();
 
-  #key(field: FieldDescription, level: LevelIndex, spec: BackgroundSpec): string {
-    return JSON.stringify([field.key, level, spec]);
+  #key({ field, member }: MemberField, level: LevelIndex, spec: BackgroundSpec): string {
+    return JSON.stringify([field.key, member, level, spec]);
   }
 
-  #covering(field: FieldDescription, level: LevelIndex, rows: IndexRange, spec: BackgroundSpec): Pass | null {
+  #covering(of: MemberField, level: LevelIndex, rows: IndexRange, spec: BackgroundSpec): Pass | null {
     if (!needsPass(spec)) return null;
-    const pass = this.#passes.get(this.#key(field, level, spec));
+    const pass = this.#passes.get(this.#key(of, level, spec));
     return pass !== undefined && pass.rows[0] <= rows[0] && pass.rows[1] >= rows[1] ? pass : null;
   }
 
   /** The background of one level if it has been fitted, else null. */
-  held(field: FieldDescription, level: LevelIndex, rows: IndexRange, spec: BackgroundSpec): FittedBackground | null {
-    const pass = this.#covering(field, level, rows, spec);
-    return pass === null ? null : assembled([pass.fitted], rows, field.grid.lon.length);
+  held(of: MemberField, level: LevelIndex, rows: IndexRange, spec: BackgroundSpec): FittedBackground | null {
+    const pass = this.#covering(of, level, rows, spec);
+    return pass === null ? null : assembled([pass.fitted], rows, of.field.grid.lon.length);
   }
 
   /** Forget the backgrounds of a file that was closed or is now read otherwise. */
   forget(file: string): void {
-    for (const key of this.#passes.keys())
-      if ((JSON.parse(key) as [string])[0].startsWith(`${file}/`)) this.#passes.delete(key);
+    for (const [key, { files }] of this.#passes) if (files.includes(file)) this.#passes.delete(key);
   }
 
   /**
@@ -102,7 +110,7 @@ export class BackgroundPasses {
    * @throws What a job threw; Cancelled.
    */
   async fitted(
-    field: FieldDescription,
+    of: MemberField,
     levels: readonly LevelIndex[],
     rows: IndexRange,
     passRows: IndexRange,
@@ -112,16 +120,20 @@ export class BackgroundPasses {
     onDone: (job: ChunkJob) => void,
   ): Promise<FittedBackground | null> {
     if (!needsPass(spec)) return null;
+    const { field } = of;
     const fits: FittedBackground[] = [];
     for (const level of levels) {
-      let pass = this.#covering(field, level, rows, spec);
+      let pass = this.#covering(of, level, rows, spec);
       if (pass === null) {
-        const jobs = passJobs(field, level, passRows, spec);
+        const jobs = passJobs(of, level, passRows, spec);
         const parts = await jobParts(jobs, crew, signal, onDone);
-        pass = { rows: passRows, fitted: fitBackground(parts, seriesOf(field, level, spec), passRows) };
+        pass = {
+          files: filesOf(field),
+          rows: passRows,
+          fitted: fitBackground(parts, seriesOf(field, level, spec), passRows),
+        };
         // A pass over more rows may have ended in the meantime; it serves more.
-        if (this.#covering(field, level, passRows, spec) === null)
-          this.#passes.set(this.#key(field, level, spec), pass);
+        if (this.#covering(of, level, passRows, spec) === null) this.#passes.set(this.#key(of, level, spec), pass);
       }
       fits.push(pass.fitted);
     }

@@ -1,19 +1,10 @@
 import { backgroundPart } from "../background/background.ts";
 import type { ChunkPart, Diagnostic } from "../diagnostics/entry.ts";
-import { DataError } from "../errors.ts";
 import type { Slab } from "../field/slab.ts";
-import type { FieldDescription, OpenFile } from "../formats/dataset.ts";
+import type { OpenRecords } from "../formats/record/open-records.ts";
 import { diagnosticOf } from "./catalogue.ts";
 import type { ChunkJob } from "./crew.ts";
 import { slabWithBackground, widened } from "./slab-background.ts";
-
-function fileOf(files: readonly OpenFile[], key: string): { file: OpenFile; field: FieldDescription } {
-  for (const file of files) {
-    const field = file.contents.fields.find((candidate) => candidate.key === key);
-    if (field !== undefined) return { file, field };
-  }
-  throw new DataError("NotFoundError", `${key} is not open here. Open its file again.`);
-}
 
 /** Slabs of the chunk before, by input: their memory serves the next, for most chunks are of one size. */
 export type SlabMemory = Map<string, Float64Array>;
@@ -25,15 +16,15 @@ export type SlabMemory = Map<string, Float64Array>;
  * @throws What reading or computing throws.
  */
 export async function chunkOf(
-  files: readonly OpenFile[],
+  open: OpenRecords,
   job: ChunkJob,
   catalogue: readonly Diagnostic[],
   memory: SlabMemory = new Map(),
 ): Promise<ChunkPart> {
-  const { series, times, rows, levelIndices } = job;
+  const { series, times, rows, levelIndices, member } = job;
   if (job.diagnostic === "background") {
-    const { file, field } = fileOf(files, job.fields.field);
-    const slab = await file.read(field.key, {
+    const read = open.reader(open.field(job.fields.field), member);
+    const slab = await read({
       times,
       rows,
       ...(levelIndices === null ? {} : { levels: levelIndices }),
@@ -45,9 +36,15 @@ export async function chunkOf(
   const slabs: Record<string, Slab> = {};
   const backgrounds: Record<string, Float64Array> = {};
   for (const [input, key] of Object.entries(job.fields)) {
-    const { file, field } = fileOf(files, key);
+    const field = open.field(key);
     const request = { times: loaded, levels: levelIndices, rows, into: memory.get(input) };
-    const { slab, background } = await slabWithBackground(file, field, request, job.background, job.fitted[input]);
+    const { slab, background } = await slabWithBackground(
+      open.reader(field, member),
+      field,
+      request,
+      job.background,
+      job.fitted[input],
+    );
     slabs[input] = slab;
     if (background !== null) backgrounds[input] = background;
   }

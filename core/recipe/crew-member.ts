@@ -1,6 +1,7 @@
 import type { FittedBackground } from "../background/fit.ts";
 import type { ChunkPart, Diagnostic } from "../diagnostics/entry.ts";
 import type { OpenFile } from "../formats/dataset.ts";
+import { OpenRecords } from "../formats/record/open-records.ts";
 import { chunkOf, type SlabMemory } from "./chunk-worker.ts";
 import type { FromWorker, ToWorker } from "./crew-line.ts";
 
@@ -17,6 +18,7 @@ export class CrewMember<Source> {
   readonly #files = new Map<number, Promise<OpenFile>>();
   readonly #backgrounds = new Map<number, FittedBackground>();
   readonly #memory: SlabMemory = new Map();
+  #records = new OpenRecords([]);
   #last: Promise<void> = Promise.resolve();
 
   constructor(
@@ -51,14 +53,29 @@ export class CrewMember<Source> {
     }
   }
 
-  /** @throws What kept a file from opening, if a field that is asked for is in none of the others. */
-  async #filesWith(keys: readonly string[]): Promise<OpenFile[]> {
+  /** What is open, joined once for all jobs on the same files. */
+  async #opened(): Promise<{ open: OpenRecords; failure: unknown }> {
     const settled = await Promise.allSettled(this.#files.values());
     const files = settled.flatMap((outcome) => (outcome.status === "fulfilled" ? [outcome.value] : []));
-    const there = new Set(files.flatMap((file) => file.contents.fields.map((field) => field.key)));
-    const failure = settled.find((outcome) => outcome.status === "rejected");
-    if (failure !== undefined && keys.some((key) => !there.has(key))) throw failure.reason;
-    return files;
+    const failure = settled.find((outcome) => outcome.status === "rejected")?.reason;
+    const isSame =
+      files.length === this.#records.files.length && files.every((file, i) => file === this.#records.files[i]);
+    if (!isSame) this.#records = new OpenRecords(files);
+    return { open: this.#records, failure };
+  }
+
+  /** @throws What kept a file from opening, if a field that is asked for is in none of the others. */
+  async #recordsWith(keys: readonly string[]): Promise<OpenRecords> {
+    const { open, failure } = await this.#opened();
+    if (failure !== undefined)
+      for (const key of keys) {
+        try {
+          open.field(key);
+        } catch {
+          throw failure;
+        }
+      }
+    return open;
   }
 
   async #work(message: Extract<ToWorker<Source>, { kind: "job" }>): Promise<void> {
@@ -70,7 +87,7 @@ export class CrewMember<Source> {
         Object.entries(job.fitted).map(([input, id]) => [input, this.#backgrounds.get(id) as FittedBackground]),
       );
       const part = await chunkOf(
-        await this.#filesWith(Object.values(job.fields)),
+        await this.#recordsWith(Object.values(job.fields)),
         { ...job, fitted },
         this.#catalogue,
         this.#memory,

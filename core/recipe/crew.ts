@@ -14,6 +14,8 @@ export interface ChunkJob {
   readonly fields: Readonly<Record<string, string>>;
   /** Indices of the selected levels in each field, absent for a field without levels. */
   readonly levelIndices: readonly number[] | null;
+  /** Number of the member; null on fields without members. */
+  readonly member: number | null;
   readonly times: IndexRange;
   /** Rows to read. */
   readonly rows: IndexRange;

@@ -1,7 +1,7 @@
 import type { FittedBackground } from "../background/fit.ts";
 import { runningMeanHalo } from "../background/running-mean.ts";
 import { NO_BACKGROUND } from "../background/spec.ts";
-import type { Diagnostic } from "../diagnostics/entry.ts";
+import type { Diagnostic, Outcome } from "../diagnostics/entry.ts";
 import { type CancelSignal, isKind, throwIfCancelled } from "../errors.ts";
 import type { IndexRange } from "../field/axes.ts";
 import type { FieldDescription, FileContents } from "../formats/dataset.ts";
@@ -10,6 +10,7 @@ import { CATALOGUE } from "./catalogue.ts";
 import { chunkCuts } from "./chunk-cuts.ts";
 import type { ChunkJob, Crew } from "./crew.ts";
 import { jobParts } from "./job-run.ts";
+import { stackedOutcome } from "./member-outcomes.ts";
 import { type RunProgress, WorkMeter } from "./progress.ts";
 import type { Provenance, Recipe, Result } from "./recipe.ts";
 import { backgroundInUse, type ResultPlan, resultPlan } from "./result-plan.ts";
@@ -46,7 +47,11 @@ function workOf(job: ChunkJob): number {
   return (times[1] - times[0]) * (rows[1] - rows[0]) * series.grid.lon.length * (series.levels?.length ?? 1);
 }
 
-function chunkJobs(planned: ResultPlan, fitted: Readonly<Record<string, FittedBackground>>): ChunkJob[] {
+function chunkJobs(
+  planned: ResultPlan,
+  member: number | null,
+  fitted: Readonly<Record<string, FittedBackground>>,
+): ChunkJob[] {
   const { diagnostic, options, series, plan, fields, levelIndices } = planned;
   const { rows, halo } = plan;
   const perStep = (rows[1] - rows[0]) * series.grid.lon.length * levelsOf(planned).length;
@@ -58,6 +63,7 @@ function chunkJobs(planned: ResultPlan, fitted: Readonly<Record<string, FittedBa
     series,
     fields: keys,
     levelIndices,
+    member,
     times,
     rows,
     halo,
@@ -84,13 +90,15 @@ function provenance(
     made: new Date().toISOString(),
     recipe: result,
     background: series.background,
-    inputs: Object.values(fields).map((field) => ({
-      file: field.file,
-      bytes: files.find((file) => file.file === field.file)?.bytes ?? 0,
-      variable: field.variable,
-      quantity: field.quantity,
-      why: field.why,
-    })),
+    inputs: Object.values(fields).flatMap((field) =>
+      (field.parts ?? [field]).map(({ file, variable }) => ({
+        file,
+        bytes: files.find((other) => other.file === file)?.bytes ?? 0,
+        variable,
+        quantity: field.quantity,
+        why: field.why,
+      })),
+    ),
   };
 }
 
@@ -129,32 +137,41 @@ export async function runRecipe(
 
   // What is planned is what will be read: the chunks of each result, and each background once.
   const seen = new Set<string>();
-  for (const planned of plans) {
-    for (const job of chunkJobs(planned, {})) meter.plan(workOf(job));
-    for (const field of Object.values(planned.fields))
-      for (const level of levelsOf(planned)) {
-        const key = `${field.key} ${level}`;
-        if (!planned.plan.usesBackground || seen.has(key)) continue;
-        seen.add(key);
-        const rows = passRows(field, plans);
-        if (passes.held(field, level, rows, background) !== null) continue;
-        for (const job of passJobs(field, level, rows, background)) meter.plan(workOf(job));
-      }
-  }
+  for (const planned of plans)
+    for (const member of planned.members) {
+      for (const job of chunkJobs(planned, member, {})) meter.plan(workOf(job));
+      for (const field of Object.values(planned.fields))
+        for (const level of levelsOf(planned)) {
+          const key = `${field.key} ${member} ${level}`;
+          if (!planned.plan.usesBackground || seen.has(key)) continue;
+          seen.add(key);
+          const rows = passRows(field, plans);
+          if (passes.held({ field, member }, level, rows, background) !== null) continue;
+          for (const job of passJobs({ field, member }, level, rows, background)) meter.plan(workOf(job));
+        }
+    }
 
-  async function made(planned: ResultPlan): Promise<Result> {
-    const { diagnostic, series, options, plan, fields, result, notes } = planned;
-    meter.title = `${result.id}: ${diagnostic.title}`;
+  async function memberOutcome(planned: ResultPlan, member: number | null): Promise<Outcome> {
+    const { diagnostic, series, options, plan, fields } = planned;
     const fitted: Record<string, FittedBackground> = {};
     if (plan.usesBackground)
       for (const [input, field] of Object.entries(fields)) {
         const rows = passRows(field, plans);
         const levels = levelsOf(planned);
-        const fit = await passes.fitted(field, levels, plan.rows, rows, background, crew, signal, onDone);
+        const of = { field, member };
+        const fit = await passes.fitted(of, levels, plan.rows, rows, background, crew, signal, onDone);
         if (fit !== null) fitted[input] = fit;
       }
-    const parts = await jobParts(chunkJobs(planned, fitted), crew, signal, onDone);
-    const outcome = diagnostic.finish(parts, series, options);
+    const parts = await jobParts(chunkJobs(planned, member, fitted), crew, signal, onDone);
+    return diagnostic.finish(parts, series, options);
+  }
+
+  async function made(planned: ResultPlan): Promise<Result> {
+    const { diagnostic, options, result, notes, members } = planned;
+    meter.title = `${result.id}: ${diagnostic.title}`;
+    const outcomes: Outcome[] = [];
+    for (const member of members) outcomes.push(await memberOutcome(planned, member));
+    const outcome = stackedOutcome(outcomes, members);
     return {
       ...outcome,
       notes: [...notes, ...outcome.notes],

@@ -12,6 +12,8 @@ export interface RecipeResult {
   readonly field: string;
   /** hPa, one or several; absent = all levels of the field. */
   readonly level?: number | readonly number[];
+  /** Numbers of members, one or several; absent = all members of the field. */
+  readonly member?: number | readonly number[];
   /** ISO dates, both included; on a record that is not a time, its numbers. Absent = the whole record. */
   readonly period?: readonly [string | number, string | number];
   readonly [option: string]: OptionValue | readonly (string | number)[] | undefined;

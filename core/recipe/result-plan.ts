@@ -5,8 +5,9 @@ import type { Diagnostic, InputSpec, OptionValues, Plan, Series } from "../diagn
 import { DataError } from "../errors.ts";
 import { stepsOfPeriod } from "../field/period.ts";
 import type { FieldDescription, FileContents } from "../formats/dataset.ts";
+import { recordFields } from "../formats/record/record-fields.ts";
 import { diagnosticOf } from "./catalogue.ts";
-import { chosenField, levelIndices, wantedLevels } from "./field-selection.ts";
+import { chosenField, levelIndices, wantedLevels, wantedMembers } from "./field-selection.ts";
 import { optionsInForce } from "./options.ts";
 import type { RecipeResult } from "./recipe.ts";
 
@@ -20,6 +21,8 @@ export interface ResultPlan {
   /** By input name. */
   readonly fields: Readonly<Record<string, FieldDescription>>;
   readonly levelIndices: readonly number[] | null;
+  /** Numbers of the members; [null] on a field without members. */
+  readonly members: readonly (number | null)[];
   readonly notes: readonly string[];
 }
 
@@ -34,8 +37,11 @@ function companionField(input: InputSpec, field: FieldDescription, files: readon
     sameValues(other.grid.lat, field.grid.lat) &&
     sameValues(other.grid.lon, field.grid.lon) &&
     sameValues(other.steps.values, field.steps.values) &&
-    sameValues(other.levels, field.levels);
-  const inFile = files.flatMap((file) => file.fields).filter(fits);
+    sameValues(other.levels, field.levels) &&
+    other.reference === field.reference &&
+    JSON.stringify(other.members) === JSON.stringify(field.members);
+  const alone = files.flatMap((file) => file.fields);
+  const inFile = [...recordFields(files).fields, ...alone].filter(fits);
   const found = inFile.find((other) => other.file === field.file) ?? inFile[0];
   if (found !== undefined) return found;
   throw new DataError(
@@ -69,7 +75,7 @@ export function resultPlan(
   const diagnostic = diagnosticOf(result.diagnostic, catalogue);
   const options = optionsInForce(diagnostic, result, path);
   const levels = wantedLevels(result.level);
-  const { field, note } = chosenField(result.field, levels, files);
+  const { field, notes } = chosenField(result.field, levels, files);
   const fields: Record<string, FieldDescription> = {};
   for (const input of diagnostic.inputs) {
     fields[input.name] = input.name === "field" ? field : companionField(input, field, files);
@@ -100,7 +106,8 @@ export function resultPlan(
     plan,
     fields,
     levelIndices: indices,
-    notes: note === null ? [] : [note],
+    members: wantedMembers(field, result.member),
+    notes,
   };
 }
 

@@ -28,13 +28,15 @@ export interface Schema {
 }
 
 /** Keys of a result that are no options; no option may bear one of these names. */
-export const RESULT_KEYS = ["id", "diagnostic", "field", "level", "period"] as const;
+export const RESULT_KEYS = ["id", "diagnostic", "field", "level", "member", "period"] as const;
 
 const MOST_HARMONICS = 12;
 const LONGEST_WINDOW = 3660; // days, ten years
 
 const TEXT: Schema = { type: "string", minLength: 1 };
 const LEVEL: Schema = { type: "number", exclusiveMinimum: 0 };
+
+const MEMBER: Schema = { type: "integer", minimum: 0 };
 
 function closedObject(
   properties: Readonly<Record<string, Schema>>,
@@ -100,6 +102,10 @@ function resultSchema(diagnostic: Diagnostic): Schema {
       description: "hPa, one or several; absent = all levels of the field.",
       anyOf: [LEVEL, { type: "array", items: LEVEL, minItems: 1 }],
     },
+    member: {
+      description: "Members of an ensemble by number, one or several; absent = all members of the field.",
+      anyOf: [MEMBER, { type: "array", items: MEMBER, minItems: 1 }],
+    },
     period: {
       description: "First and last date (ISO 8601), both included; on a record that is not a time, its numbers.",
       type: "array",
@@ -124,6 +130,7 @@ export function recipeSchema(catalogue: readonly Diagnostic[]): Schema {
       quantity: { type: "string", enum: Object.keys(QUANTITIES) },
       units: TEXT,
       level: LEVEL,
+      apart: { type: "boolean", description: "True: never joined with others to one record." },
     },
     ["file", "variable"],
     "What a variable is, said by the user",

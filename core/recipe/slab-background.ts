@@ -4,7 +4,7 @@ import { runningMean, runningMeanHalo } from "../background/running-mean.ts";
 import type { BackgroundSpec } from "../background/spec.ts";
 import type { IndexRange } from "../field/axes.ts";
 import type { Slab } from "../field/slab.ts";
-import type { FieldDescription, OpenFile } from "../formats/dataset.ts";
+import type { FieldDescription, FieldReader } from "../formats/dataset.ts";
 
 const WIDEST_VALUES = 1 << 22; // 32 MB of 64-bit numbers
 
@@ -31,11 +31,12 @@ export function widened([from, to]: IndexRange, halo: number, size: number): Ind
 /**
  * Read a slab and the background on it.
  *
+ * @param read   Of the field.
  * @param fitted Of these rows at least, and these levels; absent for a running mean, which is made from the steps around.
  * @throws What reading throws.
  */
 export async function slabWithBackground(
-  file: OpenFile,
+  read: FieldReader,
   field: FieldDescription,
   request: WholeRequest,
   spec: BackgroundSpec,
@@ -44,15 +45,15 @@ export async function slabWithBackground(
   const { times, rows } = request;
   const levels = request.levels === null ? {} : { levels: request.levels };
   if (spec.kind !== "running-mean") {
-    const slab = await file.read(field.key, { times, rows, into: request.into, ...levels });
+    const slab = await read({ times, rows, into: request.into, ...levels });
     return { slab, background: fitted === undefined ? null : backgroundAt(fitted, field.steps, times, rows) };
   }
-  return runningSlab(file, field, request, spec);
+  return runningSlab(read, field, request, spec);
 }
 
 /** Several rows at a time: the steps around a long window can be many times the slab itself. */
 async function runningSlab(
-  file: OpenFile,
+  read: FieldReader,
   field: FieldDescription,
   request: WholeRequest,
   spec: BackgroundSpec,
@@ -68,13 +69,13 @@ async function runningSlab(
   const background = new Float64Array(data.length);
   for (let from = rows[0]; from < rows[1]; from += each) {
     const block: IndexRange = [from, Math.min(rows[1], from + each)];
-    const read = await file.read(field.key, { times: wide, rows: block, ...(levels === null ? {} : { levels }) });
-    const means = runningMean(read, field.steps, wide, times, spec);
+    const around = await read({ times: wide, rows: block, ...(levels === null ? {} : { levels }) });
+    const means = runningMean(around, field.steps, wide, times, spec);
     const size = (block[1] - block[0]) * nLon;
     const skipped = (times[0] - wide[0]) * nLevel * size;
     for (let plane = 0; plane < planes; plane++) {
       const into = (plane * nRow + from - rows[0]) * nLon;
-      data.set(read.data.subarray(skipped + plane * size, skipped + (plane + 1) * size), into);
+      data.set(around.data.subarray(skipped + plane * size, skipped + (plane + 1) * size), into);
       background.set(means.subarray(plane * size, (plane + 1) * size), into);
     }
   }

@@ -3,7 +3,7 @@ import { existsSync, mkdtempSync, readFileSync, rmSync, writeFileSync } from "no
 import { tmpdir } from "node:os";
 import { join } from "node:path";
 import type { Browser, Page } from "playwright-core";
-import { afterAll, beforeAll, beforeEach, describe, expect, test } from "vitest";
+import { afterAll, afterEach, beforeAll, beforeEach, describe, expect, test } from "vitest";
 import { openBrowser, openPage, ROOT, type RunningApp, startApp } from "./window.ts";
 
 const SAMPLE = join(ROOT, "sample-data/invented-winter.nc");
@@ -13,14 +13,15 @@ let folder: string;
 
 beforeAll(async () => {
   browser = await openBrowser();
-  app = await startApp();
   folder = mkdtempSync(join(tmpdir(), "isohypse-e2e-"));
 });
-// Each test starts as a new user does.
-beforeEach(() => rmSync(join(app.state, "autosave.json"), { force: true }));
+// Each test starts as a new user does: what a page of the test before writes late must not be found by the next.
+beforeEach(async () => {
+  app = await startApp();
+});
+afterEach(() => app.stop());
 afterAll(async () => {
   await browser.close();
-  await app.stop();
   rmSync(folder, { recursive: true, force: true });
 });
 
@@ -37,6 +38,18 @@ async function settled(page: Page): Promise<void> {
 }
 async function numberIn(page: Page, id: string): Promise<number> {
   return Number(await page.locator(testId(id)).getAttribute("data-value"));
+}
+/** Wait until the case on the disk says so. */
+async function autosaved(state: string, holds: (kept: { cursor: { step: number } }) => boolean): Promise<void> {
+  await expect
+    .poll(
+      () => {
+        const path = join(state, "autosave.json");
+        return existsSync(path) && holds(JSON.parse(readFileSync(path, "utf8")));
+      },
+      { timeout: 15_000 },
+    )
+    .toBe(true);
 }
 /** What a download holds. */
 async function downloaded(
@@ -294,7 +307,7 @@ describe("files", () => {
     await page.locator(testId("file-input")).setInputFiles(saved.path);
     await expect.poll(() => textOf(page, "headline")).toContain("60°N");
     await page.locator(testId("saved")).waitFor();
-    await page.waitForTimeout(1200);
+    await autosaved(state, ({ cursor }) => cursor.step === 0);
 
     // The page is gone without a word, as in a crash; the next start asks for the file that came without a place.
     await page.context().close();
@@ -340,7 +353,7 @@ describe("files", () => {
     expect(await textOf(one.page, "notice-error")).toContain("nothing.nc: no such file");
     await one.page.keyboard.press("Home");
     await one.page.getByText("1 Jan 2001").waitFor();
-    await one.page.waitForTimeout(1500);
+    await autosaved(state, ({ cursor }) => cursor.step === 0);
     await one.page.context().close();
     await first.stop();
     const second = await startApp([], state);

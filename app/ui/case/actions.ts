@@ -23,6 +23,10 @@ export function withLevel(kept: Case, level: number): Case {
   return { ...kept, level };
 }
 
+export function withMember(kept: Case, member: number): Case {
+  return { ...kept, member };
+}
+
 /** Without a background there is no anomaly; with one, waves and shading are of the anomaly. */
 export function withBackground(kept: Case, background: BackgroundSpec): Case {
   const had = kept.background.kind !== "none";

@@ -20,45 +20,51 @@ function orNull(schema: Schema): Schema {
 const LATITUDE: Schema = { type: "number", minimum: -90, maximum: 90 };
 const LONGITUDE: Schema = { type: "number", minimum: -360, maximum: 360 };
 
-const CASE_SCHEMA: Schema = closed({
-  isohypse: { const: 1 },
-  kind: { const: "case" },
-  title: { type: "string" },
-  files: {
-    type: "array",
-    items: closed({ name: TEXT, size: { type: "integer", minimum: 0 }, place: orNull(TEXT) }),
+const CASE_SCHEMA: Schema = closed(
+  {
+    isohypse: { const: 1 },
+    kind: { const: "case" },
+    title: { type: "string" },
+    files: {
+      type: "array",
+      items: closed({ name: TEXT, size: { type: "integer", minimum: 0 }, place: orNull(TEXT) }),
+    },
+    corrections: {
+      type: "array",
+      items: closed(
+        {
+          file: TEXT,
+          variable: TEXT,
+          quantity: { type: "string", enum: Object.keys(QUANTITIES) },
+          units: TEXT,
+          level: { type: "number", exclusiveMinimum: 0 },
+          apart: { type: "boolean" },
+        },
+        ["quantity", "units", "level", "apart"],
+      ),
+    },
+    field: orNull(TEXT),
+    level: orNull({ type: "number", exclusiveMinimum: 0 }),
+    member: orNull({ type: "integer", minimum: 0 }),
+    background: BACKGROUND_SCHEMA,
+    waves: closed({
+      of: { type: "string", enum: ["anomaly", "field"] },
+      band: { type: "array", items: LATITUDE, minItems: 2, maxItems: 2 },
+    }),
+    cursor: closed({ lat: LATITUDE, lon: LONGITUDE, step: { type: "integer", minimum: 0 } }),
+    question: { type: "string", enum: ["pattern"] },
+    chart: closed({
+      kind: { type: "string", enum: ["hemisphere", "belt"] },
+      hemisphere: { type: "string", enum: ["north", "south"] },
+      turn: LONGITUDE,
+      cut: LONGITUDE,
+      shading: { type: "string", enum: ["anomaly", "field"] },
+    }),
+    theme: { type: "string", enum: ["light", "night"] },
   },
-  corrections: {
-    type: "array",
-    items: closed(
-      {
-        file: TEXT,
-        variable: TEXT,
-        quantity: { type: "string", enum: Object.keys(QUANTITIES) },
-        units: TEXT,
-        level: { type: "number", exclusiveMinimum: 0 },
-      },
-      ["quantity", "units", "level"],
-    ),
-  },
-  field: orNull(TEXT),
-  level: orNull({ type: "number", exclusiveMinimum: 0 }),
-  background: BACKGROUND_SCHEMA,
-  waves: closed({
-    of: { type: "string", enum: ["anomaly", "field"] },
-    band: { type: "array", items: LATITUDE, minItems: 2, maxItems: 2 },
-  }),
-  cursor: closed({ lat: LATITUDE, lon: LONGITUDE, step: { type: "integer", minimum: 0 } }),
-  question: { type: "string", enum: ["pattern"] },
-  chart: closed({
-    kind: { type: "string", enum: ["hemisphere", "belt"] },
-    hemisphere: { type: "string", enum: ["north", "south"] },
-    turn: LONGITUDE,
-    cut: LONGITUDE,
-    shading: { type: "string", enum: ["anomaly", "field"] },
-  }),
-  theme: { type: "string", enum: ["light", "night"] },
-});
+  // Cases of before there were members are still good.
+  ["member"],
+);
 
 /** The case as its file: JSON that a person can read. */
 export function caseText(kept: Case): string {
@@ -98,7 +104,7 @@ export function caseOfText(text: string, name: string): Case {
     if (faults.length > MOST_FAULTS) words.push(`… and ${faults.length - MOST_FAULTS} more.`);
     return refuse(words.join(" "));
   }
-  const found = value as unknown as Case;
+  const found = { ...(value as object), member: (value as { member?: number | null }).member ?? null } as Case;
   if (found.waves.band[0] > found.waves.band[1])
     return refuse(`line ${lines.get("waves.band")}, waves.band: the southern end comes first.`);
   return found;

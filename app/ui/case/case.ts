@@ -49,6 +49,8 @@ export interface Case {
   readonly field: string | null;
   /** hPa; null on a field without levels. */
   readonly level: number | null;
+  /** Number of the ensemble's member; null on a field without members. */
+  readonly member: number | null;
   readonly background: BackgroundSpec;
   readonly waves: WavesChoice;
   readonly cursor: Cursor;
@@ -66,6 +68,7 @@ export function emptyCase(theme: Theme = "light"): Case {
     corrections: [],
     field: null,
     level: null,
+    member: null,
     background: { kind: "record-mean" },
     waves: { of: "anomaly", band: [55, 55] },
     cursor: { lat: 55, lon: 0, step: 0 },

@@ -1,5 +1,6 @@
 import { type BackgroundSpec, NO_BACKGROUND } from "../../../core/background/spec.ts";
 import type { FieldDescription, FileContents } from "../../../core/formats/dataset.ts";
+import { type Records, recordFields } from "../../../core/formats/record/record-fields.ts";
 import { nearestRow } from "../../../core/grid/rows.ts";
 import type { Case } from "./case.ts";
 
@@ -9,7 +10,19 @@ const FEWEST_FOR_MEAN = 6; // steps; a departure from the mean of fewer says mor
 
 /** Fields that a map can be drawn of: every field with at least two rows and columns. */
 export function usableFields(contents: readonly FileContents[]): FieldDescription[] {
-  return contents.flatMap((file) => file.fields).filter(({ grid }) => grid.lat.length > 1 && grid.lon.length > 2);
+  return recordsOf(contents).fields.filter(({ grid }) => grid.lat.length > 1 && grid.lon.length > 2);
+}
+
+const kept = new WeakMap<readonly FileContents[], Records>();
+
+/** What the open files hold together; made once for each set of files. */
+export function recordsOf(contents: readonly FileContents[]): Records {
+  let records = kept.get(contents);
+  if (records === undefined) {
+    records = recordFields(contents);
+    kept.set(contents, records);
+  }
+  return records;
 }
 
 export function chosenFieldOf(kept: Case, contents: readonly FileContents[]): FieldDescription | null {
@@ -42,6 +55,11 @@ function settledLevel(level: number | null, field: FieldDescription): number | n
     if (found !== undefined) return found;
   }
   return levels[Math.floor(levels.length / 2)];
+}
+
+function settledMember(member: number | null, { members }: FieldDescription): number | null {
+  if (members === null) return null;
+  return member !== null && members.includes(member) ? member : (members[0] ?? null);
 }
 
 /** A band that the grid has; a single latitude becomes that of the nearest row, for that is the row whose waves are shown. */
@@ -95,6 +113,7 @@ export function settledCase(kept: Case, contents: readonly FileContents[]): Case
     ...kept,
     field: field.key,
     level: settledLevel(kept.level, field),
+    member: settledMember(kept.member, field),
     background,
     waves: { of: hasBackground ? kept.waves.of : "field", band },
     cursor: {

@@ -1,5 +1,5 @@
 import type { IndexRange } from "../../../core/field/axes.ts";
-import type { FieldDescription } from "../../../core/formats/dataset.ts";
+import { type FieldDescription, filesOf } from "../../../core/formats/dataset.ts";
 import type { Recipe } from "../../../core/recipe/recipe.ts";
 import type { Case } from "./case.ts";
 import { spanPeriod } from "./step-span.ts";
@@ -15,7 +15,8 @@ export const DRIFT_DAYS = 10;
  */
 export function waveRecipe(kept: Case, field: FieldDescription, span: IndexRange): Recipe {
   const period = spanPeriod(field.steps, span);
-  const corrections = kept.corrections.filter((correction) => correction.file === field.file);
+  const files = filesOf(field);
+  const corrections = kept.corrections.filter((correction) => files.includes(correction.file));
   return {
     isohypse: 1,
     title: kept.title,
@@ -27,6 +28,7 @@ export function waveRecipe(kept: Case, field: FieldDescription, span: IndexRange
         diagnostic: "zonal-waves",
         field: field.key,
         ...(kept.level === null ? {} : { level: kept.level }),
+        ...(kept.member === null ? {} : { member: kept.member }),
         ...(period === undefined ? {} : { period }),
         band: kept.waves.band,
         waves: [1, MOST_WAVES],

@@ -1,6 +1,6 @@
 import { DataError } from "../../../core/errors.ts";
 import type { IndexRange } from "../../../core/field/axes.ts";
-import type { FieldDescription, FileContents } from "../../../core/formats/dataset.ts";
+import { type FieldDescription, type FileContents, filesOf } from "../../../core/formats/dataset.ts";
 import type { FieldPlace, Frame, Ribbon } from "../../worker/desk.ts";
 import { chosenFieldOf, levelIndexOf } from "../case/settled-case.ts";
 import { ribbonSpan, waveSpan } from "../case/step-span.ts";
@@ -56,9 +56,10 @@ export function useNumbers({ kept, contents }: SessionState): Numbers {
   const { desk } = useSession();
   const field = chosenFieldOf(kept, contents);
   const level = field === null ? 0 : levelIndexOf(kept, field);
-  const place: FieldPlace = { key: field?.key ?? "", level };
-  const revision = contentsId(contents.find(({ file }) => file === field?.file));
-  const placeKey = field === null ? null : JSON.stringify([place.key, level, revision]);
+  const place: FieldPlace = { key: field?.key ?? "", level, member: kept.member };
+  const files = field === null ? [] : filesOf(field);
+  const revision = files.map((name) => contentsId(contents.find(({ file }) => file === name))).join(" ");
+  const placeKey = field === null ? null : JSON.stringify([place.key, level, place.member, revision]);
   const { background } = kept;
   const backgroundKey = JSON.stringify(background);
   const step = field === null ? 0 : Math.min(kept.cursor.step, field.steps.values.length - 1);

@@ -1,5 +1,14 @@
-import type { FieldDescription } from "../../../core/formats/dataset.ts";
-import { withBackground, withBand, withField, withLevel, withTheme, withTitle, withWavesOf } from "../case/actions.ts";
+import { type FieldDescription, filesOf } from "../../../core/formats/dataset.ts";
+import {
+  withBackground,
+  withBand,
+  withField,
+  withLevel,
+  withMember,
+  withTheme,
+  withTitle,
+  withWavesOf,
+} from "../case/actions.ts";
 import { usableFields } from "../case/settled-case.ts";
 import { useSession, useSessionState } from "../session/use-session.tsx";
 import { fieldEntry } from "../text/field-name.ts";
@@ -41,7 +50,8 @@ export function CaseBar({ field, onCard, onSave }: CaseBarProps) {
   const session = useSession();
   const { kept, contents } = useSessionState();
   const fields = usableFields(contents);
-  const invented = contents.some(({ file, about }) => file === field?.file && isInvented(about));
+  const invented =
+    field !== null && contents.some(({ file, about }) => filesOf(field).includes(file) && isInvented(about));
   const south = kept.chart.hemisphere === "south";
   const bands = BANDS.map(([a, b]) => (south ? ([-b, -a] as const) : ([a, b] as const)));
   const known = bands.some(([a, b]) => a === kept.waves.band[0] && b === kept.waves.band[1]);
@@ -121,6 +131,23 @@ export function CaseBar({ field, onCard, onSave }: CaseBarProps) {
                 {Array.from(field.levels, (level) => (
                   <option key={level} value={String(level)}>
                     {level} hPa
+                  </option>
+                ))}
+              </select>
+            </label>
+          )}
+          {field.members !== null && (
+            <label className="choice">
+              <span>Member</span>
+              <select
+                id="choose-member"
+                value={String(kept.member)}
+                data-testid="choose-member"
+                onChange={(event) => session.act((now) => withMember(now, Number(event.target.value)))}
+              >
+                {field.members.map((member) => (
+                  <option key={member} value={String(member)}>
+                    {member}
                   </option>
                 ))}
               </select>

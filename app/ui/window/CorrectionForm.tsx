@@ -29,6 +29,7 @@ export function CorrectionForm({ file, variable, units, hasLevels, said, onDone 
   const [quantity, setQuantity] = useState<Quantity>(said?.quantity ?? "geopotential_height");
   const [typed, setTyped] = useState(said?.units ?? units);
   const [level, setLevel] = useState(said?.level === undefined ? "" : String(said.level));
+  const [isApart, setApart] = useState(said?.apart === true);
   const pressure = Number(level);
   const isGood = typed.trim() !== "" && (level.trim() === "" || pressure > 0);
   return (
@@ -45,6 +46,7 @@ export function CorrectionForm({ file, variable, units, hasLevels, said, onDone 
           quantity,
           ...(stated === units ? {} : { units: stated }),
           ...(level.trim() === "" ? {} : { level: pressure }),
+          ...(isApart ? { apart: true } : {}),
         });
       }}
     >
@@ -92,6 +94,15 @@ export function CorrectionForm({ file, variable, units, hasLevels, said, onDone 
           hPa
         </label>
       )}
+      <label title="Never part of one record with fields of other files">
+        <input
+          type="checkbox"
+          checked={isApart}
+          data-testid="correction-apart"
+          onChange={(event) => setApart(event.target.checked)}
+        />{" "}
+        keep apart
+      </label>
       <button type="submit" disabled={!isGood} data-testid="correction-set">
         Set
       </button>

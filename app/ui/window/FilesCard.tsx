@@ -1,6 +1,8 @@
 import { Fragment, useState } from "react";
+import { dayText } from "../../../core/field/calendar.ts";
 import { QUANTITIES } from "../../../core/field/quantity.ts";
 import type { FieldDescription, FileContents } from "../../../core/formats/dataset.ts";
+import { recordsOf } from "../case/settled-case.ts";
 import { useSession, useSessionState } from "../session/use-session.tsx";
 import { numberText } from "../text/number-text.ts";
 import { stepLine } from "../text/step-name.ts";
@@ -19,6 +21,7 @@ export function FilesCard({ onClose, onOpen }: FilesProps) {
   return (
     <Card title="Files" testId="card-files" onClose={onClose}>
       {contents.length === 0 && <p>No file is open.</p>}
+      <RecordNotes />
       {contents.map((file) => (
         <FileSection key={file.file} file={file} />
       ))}
@@ -40,6 +43,27 @@ export function FilesCard({ onClose, onOpen }: FilesProps) {
   );
 }
 
+/** What the open files make together: records, their gaps, and which of two files is used. */
+function RecordNotes() {
+  const { contents } = useSessionState();
+  const { notes } = recordsOf(contents);
+  if (notes.size === 0) return null;
+  return (
+    <section className="file" data-testid="records">
+      <h3>Joined</h3>
+      {[...notes].map(([key, words]) => (
+        <div key={key}>
+          {words.map((note) => (
+            <p key={note} className="note">
+              {note}
+            </p>
+          ))}
+        </div>
+      ))}
+    </section>
+  );
+}
+
 function levelsText(field: FieldDescription): string {
   const levels = Array.from(field.levels ?? []);
   if (levels.length === 0) return "no level";
@@ -52,6 +76,16 @@ function stepsText({ steps }: FieldDescription): string {
   if (n === 1) return stepLine(steps, 0);
   const ends = `${stepLine(steps, 0)} to ${stepLine(steps, n - 1)}`;
   return `${n} steps, ${ends}`;
+}
+
+function membersText({ members }: FieldDescription): string {
+  return members === null ? "" : `${members.length} members, `;
+}
+
+function startText({ reference, steps }: FieldDescription): string {
+  if (reference === null) return "";
+  const { day, hour } = dayText(reference, steps.calendar);
+  return `forecast from ${day} ${hour}; `;
 }
 
 function FileSection({ file }: { readonly file: FileContents }) {
@@ -119,6 +153,8 @@ function FileSection({ file }: { readonly file: FileContents }) {
                 <td>
                   {levelsText(field)}
                   <span className="note">
+                    {startText(field)}
+                    {membersText(field)}
                     {stepsText(field)}; {field.grid.lat.length} × {field.grid.lon.length}
                   </span>
                 </td>

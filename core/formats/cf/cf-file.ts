@@ -49,6 +49,7 @@ async function readableFields(
       levels: layout.levels,
       members: layout.members,
       reference: layout.reference,
+      ...(correction?.apart === true ? { apart: true } : {}),
     };
     return { description, variable, layout, decoding };
   });

@@ -77,7 +77,7 @@ function start(workers: (index: number) => FakeWorker, answerWithin = 10_000) {
 }
 
 const range = (name: string): SourceDescription => ({ kind: "range", name, size: 1, url: `/files/${name}` });
-const PLACE = { key: "a.nc/z", level: 0 };
+const PLACE = { key: "a.nc/z", level: 0, member: null };
 
 describe("startDesk", () => {
   test("passes calls on, numbers and errors with name and words come back", async () => {

@@ -52,7 +52,7 @@ function plane(step: number, level: number): number[] {
   return Array.from({ length: 19 * 16 }, (_, i) => Math.fround(fakeValue(step, level, Math.floor(i / 16), i % 16)));
 }
 
-const Z = { key: "a.nc/z", level: 1 };
+const Z = { key: "a.nc/z", level: 1, member: null };
 const NONE = { kind: "none" } as const;
 
 describe("files", () => {
@@ -93,7 +93,9 @@ describe("frames", () => {
     // A transferred frame must not take the cached one with it.
     first.values.fill(0);
     expect([...(await service.frame(Z, 3, NONE)).values]).toEqual(plane(3, 1));
-    expect([...(await service.frame({ key: "a.nc/flat", level: 0 }, 5, NONE)).values]).toEqual(plane(5, 0));
+    expect([...(await service.frame({ key: "a.nc/flat", level: 0, member: null }, 5, NONE)).values]).toEqual(
+      plane(5, 0),
+    );
   });
 
   test("stepping reads ahead in blocks, in the direction of travel", async () => {
@@ -113,7 +115,9 @@ describe("frames", () => {
     const { service } = desk();
     await service.open([source("a.nc")], []);
     await expect(service.frame(Z, STEPS, NONE)).rejects.toThrow("a.nc/z has no step 40; it has 40.");
-    await expect(service.frame({ key: "a.nc/z", level: 2 }, 0, NONE)).rejects.toThrow("no level number 2");
+    await expect(service.frame({ key: "a.nc/z", level: 2, member: null }, 0, NONE)).rejects.toThrow(
+      "no level number 2",
+    );
   });
 
   test("a read that failed is tried again", async () => {
@@ -146,7 +150,7 @@ describe("backgrounds", () => {
       expect(background?.[i]).toBe(Math.fround(sum / STEPS));
     }
     // Another level has not been fitted.
-    expect((await service.frame({ key: "a.nc/z", level: 0 }, 3, MEAN)).background).toBeNull();
+    expect((await service.frame({ key: "a.nc/z", level: 0, member: null }, 3, MEAN)).background).toBeNull();
   });
 
   test("is fitted once, and forgotten with its file", async () => {

@@ -1,5 +1,6 @@
 import { describe, expect, test } from "vitest";
 import type { OpenFile } from "../../../core/formats/dataset.ts";
+import { OpenRecords } from "../../../core/formats/record/open-records.ts";
 import { chunkOf } from "../../../core/recipe/chunk-worker.ts";
 import type { ChunkJob, Crew } from "../../../core/recipe/crew.ts";
 import { CrewMember } from "../../../core/recipe/crew-member.ts";
@@ -55,7 +56,7 @@ function shuffledCrew(size: number): Crew {
     async run(job: ChunkJob) {
       turn += 1;
       const wait = (turn * 3) % 4;
-      const part = await chunkOf([open], job, FAKE_CATALOGUE);
+      const part = await chunkOf(new OpenRecords([open]), job, FAKE_CATALOGUE);
       await new Promise((resolve) => setTimeout(resolve, wait));
       return part;
     },
@@ -173,7 +174,7 @@ describe("runRecipe", () => {
     const crew: Crew = {
       size: 1,
       async run(job) {
-        const part = await chunkOf([open], job, FAKE_CATALOGUE);
+        const part = await chunkOf(new OpenRecords([open]), job, FAKE_CATALOGUE);
         seen.push([...job.times, ...part.loaded, part.shape[0]]);
         return part;
       },
@@ -303,6 +304,7 @@ describe("CrewMember", () => {
     },
     fields: { field: "a.nc/z" },
     levelIndices: [0],
+    member: null,
     times: [0, 1] as const,
     rows: [0, 9] as const,
     halo: 0,

@@ -22,10 +22,13 @@ const field = (
   steps,
 });
 
+const monthly: StepAxis = { ...steps, values: steps.values.map((_, i) => 30 * i) };
+
 describe("chosenField", () => {
   const files = [
     fakeContents("a.nc", [field("z", [500, 250]), field("x", null, null)]),
-    fakeContents("b.nc", [field("hgt", [1000])]),
+    // Monthly, and so no part of one record with the daily ones
+    fakeContents("b.nc", [{ ...field("hgt", [1000]), steps: monthly }]),
   ];
 
   test("by key, whatever its quantity", () => {
@@ -35,10 +38,10 @@ describe("chosenField", () => {
   test("by quantity, the level settling which, with a note", () => {
     expect(chosenField("geopotential_height", [1000], files)).toMatchObject({
       field: { key: "b.nc/hgt" },
-      note: "b.nc/hgt was taken for geopotential_height: it alone has 1000 hPa (not a.nc/z).",
+      notes: ["b.nc/hgt was taken for geopotential_height: it alone has 1000 hPa (not a.nc/z)."],
     });
     expect(chosenField("geopotential_height", [500, 250], files).field.key).toBe("a.nc/z");
-    expect(chosenField("geopotential_height", [500], [files[0]])).toMatchObject({ note: null });
+    expect(chosenField("geopotential_height", [500], [files[0]])).toMatchObject({ notes: [] });
   });
 
   test("several that serve equally: the user must say", () => {

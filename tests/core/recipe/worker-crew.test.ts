@@ -22,6 +22,7 @@ function job(from: number, fitted: Record<string, FittedBackground> = {}): Chunk
     },
     fields: { field: "a.nc/z" },
     levelIndices: null,
+    member: null,
     times: [from, from + 1],
     rows: [0, 3],
     halo: 0,
