@@ -13,7 +13,8 @@ export function stepMark(steps: StepAxis, index: number): number {
 export function usualStep({ kind, values }: StepAxis): number | null {
   if (kind !== "time" || values.length < 2) return null;
   const steps = Float64Array.from({ length: values.length - 1 }, (_, i) => values[i + 1] - values[i]).sort();
-  return steps[steps.length >> 1] as number;
+  // The lower of two in the middle: a gap must not pass for the rule.
+  return steps[(steps.length - 1) >> 1] as number;
 }
 
 /** All steps of some fields, each once, in order. */
