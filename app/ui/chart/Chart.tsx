@@ -9,6 +9,8 @@ import type { ChartProps } from "./types.ts";
 
 const WEIGHTS = [400, 560, 620, 640] as const;
 const LEAST_SIZE = 50;
+/** Milliseconds from one step to the next within which time counts as moving. */
+const MOVING = 150;
 
 /** True once the app's type is there: a drawing made before would keep the wrong one. */
 function useFont(): boolean {
@@ -35,6 +37,7 @@ export function Chart(props: ChartProps) {
   const memory = useMemo(() => new ChartMemory(), []);
   const hasFont = useFont();
   const hold = useRef<Hold>(null);
+  const last = useRef<{ readonly values: unknown; readonly time: number }>({ values: null, time: 0 });
 
   useEffect(() => {
     const element = canvas.current;
@@ -47,11 +50,25 @@ export function Chart(props: ChartProps) {
       element.height = tall;
     }
     context.setTransform(density, 0, 0, density, 0, 0);
-    context.clearRect(0, 0, width, height);
     // Letters at fractions of a pixel: turned numbers would else be spaced unevenly.
     context.textRendering = "geometricPrecision";
-    const raster = { context, density, shadingDensity: Math.max(2, density) };
-    drawChart(canvasPen(context), raster, view, layers, theme, width, height, memory);
+    const draw = (shadingDensity: number, isMoving: boolean): void => {
+      context.clearRect(0, 0, width, height);
+      drawChart(canvasPen(context), { context, density, shadingDensity, isMoving }, view, layers, theme, width, height, memory);
+    };
+    // While one step follows another the shading is drawn a pixel at a time, and finely once time rests.
+    const values = layers.shading?.values ?? null;
+    const now = performance.now();
+    const isMoving = values !== last.current.values && now - last.current.time < MOVING;
+    if (values !== last.current.values) last.current = { values, time: now };
+    const fine = Math.max(2, density);
+    if (!isMoving) {
+      draw(fine, false);
+      return;
+    }
+    draw(1, true);
+    const rest = setTimeout(() => draw(fine, false), MOVING);
+    return () => clearTimeout(rest);
   }, [view, layers, theme, width, height, density, memory, hasFont]);
 
   const { map } = useMemo(() => chartLayout(view, width, height), [view, width, height]);

@@ -32,8 +32,10 @@ export interface Raster {
   readonly context: CanvasRenderingContext2D;
   /** Pixels of the canvas per pixel of the drawing. */
   readonly density: number;
-  /** Pixels of the shading per pixel of the drawing: at least 2, for even band edges. */
+  /** Pixels of the shading per pixel of the drawing: 2 at least for even band edges, 1 while time moves fast. */
   readonly shadingDensity: number;
+  /** True while one step follows another: what is drawn is gone before it could be used again. */
+  readonly isMoving: boolean;
 }
 
 /** All that the parts of a drawing have in common. */
@@ -98,7 +100,13 @@ function drawGround(drawing: Drawing): Plane | null {
   const { pen, raster, map, layers, theme, memory } = drawing;
   const { shading, contours, grid } = layers;
   if (raster === null) return drawGroundLines(drawing, pen);
-  const { context, density, shadingDensity } = raster;
+  const { context, density, shadingDensity, isMoving } = raster;
+  if (isMoving) {
+    pen.save();
+    const missing = drawGroundLines(drawing, pen);
+    pen.restore();
+    return missing;
+  }
   const ground = memory.kept<{ canvas: HTMLCanvasElement; missing: Plane | null }>(
     "ground",
     [
@@ -118,7 +126,7 @@ function drawGround(drawing: Drawing): Plane | null {
       const own = canvas.getContext("2d") as CanvasRenderingContext2D;
       own.setTransform(density, 0, 0, density, 0, 0);
       const missing = drawGroundLines(
-        { ...drawing, raster: { context: own, density, shadingDensity } },
+        { ...drawing, raster: { context: own, density, shadingDensity, isMoving } },
         canvasPen(own),
       );
       return { canvas, missing };
@@ -156,12 +164,13 @@ function drawPixels({ map, theme, memory }: Drawing, raster: Raster, field: Fine
   const { context, shadingDensity: density } = raster;
   const { x, y, width, height } = map.box;
   const { nLat, nLon, lat0, dLat, dLon } = field;
+  // Fast and fine shading take turns while time moves: each keeps its own.
   const table = memory.kept(
-    "table",
+    `table ${density}`,
     [map.view.kind, map.north, x, y, width, height, nLat, nLon, lat0, dLat, dLon, density],
     () => pixelTable(map, field, density),
   );
-  const scratch = memory.kept<{ canvas: HTMLCanvasElement; image: ImageData }>("pixels", [table], (old) => {
+  const scratch = memory.kept<{ canvas: HTMLCanvasElement; image: ImageData }>(`pixels ${density}`, [table], (old) => {
     const canvas = clearCanvas(old?.canvas, table.width, table.height);
     return { canvas, image: new ImageData(table.width, table.height) };
   });

@@ -120,7 +120,7 @@ export function chartPng(
   context.fillStyle = THEMES[theme].sheet;
   context.fillRect(0, 0, sheet.width, sheet.height);
   context.translate(PADDING, PADDING);
-  const raster: Raster = { context, density, shadingDensity: density };
+  const raster: Raster = { context, density, shadingDensity: density, isMoving: false };
   drawChart(canvasPen(context), raster, view, layers, theme, width, height, new ChartMemory());
   drawNotes(canvasPen(context), sheet.lines, height, theme);
   return new Promise((resolve, reject) =>
