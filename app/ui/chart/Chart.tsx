@@ -54,7 +54,16 @@ export function Chart(props: ChartProps) {
     context.textRendering = "geometricPrecision";
     const draw = (shadingDensity: number, isMoving: boolean): void => {
       context.clearRect(0, 0, width, height);
-      drawChart(canvasPen(context), { context, density, shadingDensity, isMoving }, view, layers, theme, width, height, memory);
+      drawChart(
+        canvasPen(context),
+        { context, density, shadingDensity, isMoving },
+        view,
+        layers,
+        theme,
+        width,
+        height,
+        memory,
+      );
     };
     // While one step follows another the shading is drawn a pixel at a time, and finely once time rests.
     const values = layers.shading?.values ?? null;
