@@ -22,8 +22,9 @@ const APP_FOLDERS: Readonly<Record<string, { readonly values: readonly string[];
     main: { values: ["shell"], types: [] },
     preload: { values: ["shell"], types: [] },
     local: { values: ["shell"], types: [] },
-    worker: { values: [], types: [] },
-    batch: { values: [], types: [] },
+    codecs: { values: [], types: [] },
+    worker: { values: ["codecs"], types: [] },
+    batch: { values: ["codecs"], types: [] },
     ui: { values: ["worker"], types: ["shell"] },
   };
 
@@ -42,7 +43,9 @@ const PACKAGES: Readonly<Record<string, readonly string[]>> = {
   "topojson-specification": ["app/ui"],
   "@fontsource-variable/sofia-sans": ["app/ui"],
   comlink: ["app/worker", "app/ui"],
-  netcdfjs: ["core/formats"],
+  h5wasm: ["app/codecs"],
+  "fast-png": ["app/codecs"],
+  "@cornerstonejs/codec-openjpeg": ["app/codecs"],
 };
 const NODE_FOLDERS = ["app/shell", "app/main", "app/local", "app/batch"];
 

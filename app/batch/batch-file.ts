@@ -1,5 +1,6 @@
 import type { OpenFile } from "../../core/formats/dataset.ts";
 import { openFile } from "../../core/formats/open-file.ts";
+import { LIBRARIES } from "../codecs/libraries.ts";
 import { openFileSource } from "./file-source.ts";
 import type { BatchFile } from "./thread-crew.ts";
 
@@ -7,7 +8,7 @@ import type { BatchFile } from "./thread-crew.ts";
 export async function openBatchFile({ path, corrections }: BatchFile): Promise<OpenFile> {
   const source = await openFileSource(path);
   try {
-    const file = await openFile(source, corrections);
+    const file = await openFile(source, LIBRARIES, corrections);
     return {
       contents: file.contents,
       read: (key, request) => file.read(key, request),

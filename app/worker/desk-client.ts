@@ -20,6 +20,8 @@ export interface DeskClientParts {
   /** How often a worker with work is asked whether it lives, and how long it may take to answer; milliseconds. */
   readonly askEvery: number;
   readonly answerWithin: number;
+  /** The same while a file is opened. */
+  readonly openWithin: number;
 }
 
 type RemoteDesk = Comlink.Remote<Desk & { ping(): boolean }>;
@@ -47,7 +49,13 @@ const BROWSER: DeskClientParts = {
   askEvery: 5000,
   // A single chunk or a result's last step may keep the worker's thread busy; a minute is no longer that.
   answerWithin: 60_000,
+  openWithin: 5000,
 };
+
+function nameOf(source: SourceDescription): string {
+  if (source.kind === "file") return source.file.name;
+  return source.kind === "range" ? source.name : source.path;
+}
 
 /** Addresses are resolved here: a worker's own base is where its script lies. */
 function absolute(source: SourceDescription): SourceDescription {
@@ -75,7 +83,7 @@ class RestartingDesk implements DeskClient {
     const reports = [];
     // One by one, so that it is known which source became which file.
     for (const source of resolved) {
-      const report = await this.#call((desk) => desk.open([source], corrections));
+      const report = await this.#call((desk) => desk.open([source], corrections), nameOf(source));
       for (const { file } of report.opened) this.#files.set(file, { source, corrections });
       reports.push(report);
     }
@@ -86,7 +94,7 @@ class RestartingDesk implements DeskClient {
   }
 
   async correct(file: string, corrections: readonly Correction[]) {
-    const contents = await this.#call((desk) => desk.correct(file, corrections));
+    const contents = await this.#call((desk) => desk.correct(file, corrections), file);
     const opened = this.#files.get(file);
     if (opened !== undefined) this.#files.set(file, { ...opened, corrections });
     return contents;
@@ -113,12 +121,45 @@ class RestartingDesk implements DeskClient {
     this.#life?.die("the window closes.");
   }
 
-  async #call<T>(ask: (desk: RemoteDesk) => Promise<T>): Promise<T> {
+  /** @param opening Name of the file that the call opens: a damaged one may keep its reader busy for ever. */
+  async #call<T>(ask: (desk: RemoteDesk) => Promise<T>, opening?: string): Promise<T> {
     if (this.#ended) throw new DataError("WorkerError", "The window's desk has been closed.");
     this.#life ??= this.#begin();
     const life = this.#life;
     await Promise.race([life.restored, life.death]);
-    return this.#guarded(life, ask(life.remote));
+    if (opening === undefined) return this.#guarded(life, ask(life.remote));
+    const stop = this.#watchOpening(life, opening);
+    try {
+      return await this.#guarded(life, ask(life.remote));
+    } finally {
+      stop();
+    }
+  }
+
+  /** While a file is opened the worker must answer within seconds: headers are read in pieces, and none takes long. */
+  #watchOpening(life: Life, file: string): () => void {
+    const { askEvery, openWithin } = this.#parts;
+    let isOpening = true;
+    const ask = (): void => {
+      if (!isOpening || this.#life !== life) return;
+      const late = setTimeout(() => {
+        if (isOpening)
+          life.die(
+            `${file} could not be read within ${openWithin / 1000} s: it is probably damaged. Fetch it again; on a slow disk, copy it to a faster one. The other files stay open.`,
+          );
+      }, openWithin);
+      const answered = (): void => {
+        clearTimeout(late);
+        setTimeout(ask, askEvery);
+      };
+      (life.remote.ping() as Promise<boolean>).then(answered, answered);
+      life.death.catch(() => clearTimeout(late));
+    };
+    // Loading the worker itself may take its time: the limit holds from its first answer on.
+    (life.remote.ping() as Promise<boolean>).then(ask, () => undefined);
+    return () => {
+      isOpening = false;
+    };
   }
 
   /** A call's answer, or the worker's death, whichever comes first. */

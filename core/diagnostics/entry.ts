@@ -152,6 +152,8 @@ export interface Diagnostic {
   readonly inputs: readonly InputSpec[];
   readonly options: readonly OptionSpec[];
   readonly outputs: readonly OutputSpec[];
+  /** Dimensions that number rows of a table, and what the table is called: each becomes a CSV and a JSON file of its own. */
+  readonly tables?: Readonly<Record<string, string>>;
   /** @throws DataError when the series cannot serve (grid does not close, band holds no row, too short). */
   plan(series: Series, options: OptionValues): Plan;
   /** Pure, and the same numbers however the record is cut. */

@@ -171,7 +171,7 @@ export async function runRecipe(
     meter.title = `${result.id}: ${diagnostic.title}`;
     const outcomes: Outcome[] = [];
     for (const member of members) outcomes.push(await memberOutcome(planned, member));
-    const outcome = stackedOutcome(outcomes, members);
+    const outcome = stackedOutcome(outcomes, members, Object.keys(diagnostic.tables ?? {}));
     return {
       ...outcome,
       notes: [...notes, ...outcome.notes],

@@ -99,6 +99,11 @@ function reasonVariable(variable: ResultVariable): WrittenVariable {
   };
 }
 
+/** Calendar in which the result's days count; undefined where its steps are no times. */
+export function calendarOf({ coordinates }: Pick<Result, "coordinates">): string | undefined {
+  return coordinates.find(({ name }) => name === "time")?.attributes?.calendar;
+}
+
 /** Variables that are the very quantity of the input, and so bear its CF name. */
 const SAME_QUANTITY = ["mean", "reconstruction"];
 
@@ -111,6 +116,7 @@ function dataVariable(
   variable: ResultVariable,
   listed: readonly string[],
   named: Readonly<Record<string, string>>,
+  calendar: string | undefined,
 ): WrittenVariable {
   const { name, title, units, dims, data } = variable;
   const attributes: Record<string, WrittenAttribute> = {
@@ -122,8 +128,16 @@ function dataVariable(
   // Of the variable's own type, as CF asks.
   if (data instanceof Float64Array) attributes._FillValue = Float64Array.of(Number.NaN);
   if (data instanceof Float32Array) attributes._FillValue = Float32Array.of(Number.NaN);
+  // Bytes are written signed: 255, which stands for unknown, is −1 there.
+  if (data instanceof Uint8Array) attributes._FillValue = Int8Array.of(-1);
+  if (units.startsWith("days since") && calendar !== undefined) attributes.calendar = calendar;
   if (listed.length > 0) attributes.coordinates = listed.join(" ");
-  return { name, dims, attributes, data: data instanceof Uint8Array ? Int8Array.from(data) : data };
+  return {
+    name,
+    dims,
+    attributes,
+    data: data instanceof Uint8Array ? new Int8Array(data.buffer, data.byteOffset, data.length) : data,
+  };
 }
 
 /**
@@ -163,6 +177,7 @@ export function resultLayout(result: Result): WrittenFile {
             variable,
             aside.map(({ name }) => name),
             quantityName(variable, result),
+            calendarOf(result),
           ),
           reasonVariable(variable),
         ];

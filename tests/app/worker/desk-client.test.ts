@@ -10,6 +10,8 @@ class FakeWorker {
   readonly calls: string[] = [];
   terminated = false;
   listener: ((progress: TaskProgress) => void) | null = null;
+  /** True once it was asked to open a file that it never ends with. */
+  isStuck = false;
   /** Calls to `frame` wait until this resolves. */
   frames: Promise<void> = Promise.resolve();
 
@@ -29,6 +31,10 @@ class FakeWorker {
         const [source] = sources;
         const name = source.kind === "range" ? source.name : "?";
         this.calls.push(`open ${name}`);
+        if (name === "endless.nc") {
+          this.isStuck = true;
+          await new Promise(() => undefined);
+        }
         if (name === "bad.nc") return { opened: [], refused: [{ file: name, words: "damaged" }] };
         return {
           opened: [{ file: name, format: "", bytes: 1, fields: [], leftOut: [], notes: [], about: {} }],
@@ -46,7 +52,7 @@ class FakeWorker {
       onProgress: async (callback) => {
         this.listener = callback;
       },
-      ping: () => true,
+      ping: () => (this.isStuck ? new Promise<boolean>(() => undefined) : true) as boolean,
     };
     if (answers) Comlink.expose(desk, port2 as unknown as Comlink.Endpoint);
   }
@@ -61,7 +67,7 @@ afterEach(() => {
   for (const client of clients.splice(0)) client.end();
 });
 
-function start(workers: (index: number) => FakeWorker, answerWithin = 10_000) {
+function start(workers: (index: number) => FakeWorker, answerWithin = 10_000, openWithin = 10_000) {
   const started: FakeWorker[] = [];
   const client = startDesk({
     start: () => {
@@ -71,6 +77,7 @@ function start(workers: (index: number) => FakeWorker, answerWithin = 10_000) {
     },
     askEvery: 20,
     answerWithin,
+    openWithin,
   });
   clients.push(client);
   return { client, started };
@@ -130,6 +137,17 @@ describe("startDesk", () => {
     await expect(client.open([range("a.nc")], [])).rejects.toThrow("it has not answered for");
     expect((await client.open([range("a.nc")], [])).opened).toHaveLength(1);
     expect(started).toHaveLength(2);
+  });
+
+  test("a file that its reader never ends with costs the worker, and no other file", async () => {
+    const { client, started } = start(() => new FakeWorker(), 10_000, 60);
+    await client.open([range("a.nc")], []);
+    await expect(client.open([range("endless.nc")], [])).rejects.toThrow(
+      "endless.nc could not be read within 0.06 s: it is probably damaged",
+    );
+    expect((await client.frame(PLACE, 0, { kind: "none" })).values).toHaveLength(2);
+    expect(started).toHaveLength(2);
+    expect(started[1].calls).toEqual(["open a.nc"]);
   });
 
   test("long work is not taken for death while the worker answers", async () => {

@@ -1,4 +1,5 @@
 import { expect, test } from "vitest";
+import { LIBRARIES } from "../../../app/codecs/libraries.ts";
 import type { FileContents, OpenFile } from "../../../core/formats/dataset.ts";
 import { openFile } from "../../../core/formats/open-file.ts";
 import { CATALOGUE } from "../../../core/recipe/catalogue.ts";
@@ -60,7 +61,7 @@ function run(files: readonly OpenFile[], recipe: Omit<Recipe, "isohypse">) {
 const waves = { id: "w", diagnostic: "zonal-waves", field: "geopotential_height", waves: [2, 2] } as const;
 
 test("every member is computed, or those that are asked for, in that order", async () => {
-  const file = await openFile(ensemble("e.nc", MEMBERS));
+  const file = await openFile(ensemble("e.nc", MEMBERS), LIBRARIES);
   for (const [member, want] of [
     [undefined, MEMBERS],
     [
@@ -87,7 +88,10 @@ test("every member is computed, or those that are asked for, in that order", asy
 });
 
 test("a member alone gives the very numbers that it has in a file of its own", async () => {
-  const [all, one] = [await openFile(ensemble("e.nc", [5, 6])), await openFile(ensemble("one.nc", null))];
+  const [all, one] = [
+    await openFile(ensemble("e.nc", [5, 6]), LIBRARIES),
+    await openFile(ensemble("one.nc", null), LIBRARIES),
+  ];
   const background = { kind: "record-mean" } as const;
   const asked = { ...waves, of: "anomaly", point: [0, 50] } as const;
   const { results: stacked } = await run([all], { background, results: [{ ...asked, member: 5 }] });
@@ -99,8 +103,8 @@ test("a member alone gives the very numbers that it has in a file of its own", a
 });
 
 test("members that are not there, or asked twice, or of a field without any, are refused in words", async () => {
-  const file = await openFile(ensemble("e.nc", MEMBERS));
-  const plain = await openFile(ensemble("one.nc", null));
+  const file = await openFile(ensemble("e.nc", MEMBERS), LIBRARIES);
+  const plain = await openFile(ensemble("one.nc", null), LIBRARIES);
   const words = async (open: OpenFile, member: number | number[]) =>
     (await run([open], { results: [{ ...waves, member }] })).failed[0]?.words;
   expect(await words(file, 1)).toBe("e.nc/z has no member 1; it has 3, 0, 7");

@@ -1,4 +1,5 @@
 import { describe, expect, test } from "vitest";
+import { LIBRARIES } from "../../../../app/codecs/libraries.ts";
 import { daysOf } from "../../../../core/field/calendar.ts";
 import type { WrittenAttribute, WrittenVariable } from "../../../../core/formats/netcdf/write.ts";
 import { openFile } from "../../../../core/formats/open-file.ts";
@@ -50,6 +51,7 @@ describe("forecasts", () => {
         time: { values: [12], attributes: { units: SINCE, standard_name: "time" } },
         step: { values: [0, 6, 48], attributes: { units: "hours", standard_name: "forecast_period" } },
       }),
+      LIBRARIES,
     );
     const [field] = file.contents.fields;
     expect(field).toMatchObject({ key: "fc.nc/z", reference: start + 0.5, members: null });
@@ -63,6 +65,7 @@ describe("forecasts", () => {
         forecast_reference_time: { values: [0, 12.5], attributes: { units: SINCE } },
         lead: { values: [0, 1], attributes: { units: "days" } },
       }),
+      LIBRARIES,
     );
     expect(file.contents.fields.map(({ key }) => key)).toEqual(["fc.nc/z@2001-01-01T00", "fc.nc/z@2001-01-01T12:30"]);
     const [, second] = file.contents.fields;
@@ -77,7 +80,10 @@ describe("forecasts", () => {
       attributes: { units: SINCE, standard_name: "forecast_reference_time" },
       data: Float64Array.of(6),
     };
-    const file = await openFile(forecastFile({ time: { values: [6, 12], attributes: { units: SINCE } } }, [single]));
+    const file = await openFile(
+      forecastFile({ time: { values: [6, 12], attributes: { units: SINCE } } }, [single]),
+      LIBRARIES,
+    );
     expect(file.contents.fields[0]).toMatchObject({ key: "fc.nc/z", reference: start + 0.25 });
   });
 
@@ -91,7 +97,7 @@ describe("forecasts", () => {
       "forecast steps do not increase at step 2",
     ],
   ])("what cannot be understood is left out, with the reason %#", async (axes, words) => {
-    const { contents } = await openFile(forecastFile(axes as never));
+    const { contents } = await openFile(forecastFile(axes as never), LIBRARIES);
     expect(contents.fields).toEqual([]);
     expect(contents.leftOut[0]?.why).toContain(words);
   });
@@ -105,7 +111,7 @@ describe("members", () => {
       ["who", { standard_name: "realization" }, [0, 1], [0, 1]],
       ["who", { axis: "E" }, [0.5, 1.5], [0, 1]],
     ] as const) {
-      const file = await openFile(forecastFile({ time, [name]: { values: [...values], attributes } }));
+      const file = await openFile(forecastFile({ time, [name]: { values: [...values], attributes } }), LIBRARIES);
       expect(file.contents.fields[0]?.members).toEqual(members);
       expect((await file.read("fc.nc/z", { times: [0, 1], member: 1 })).data[0]).toBe(6);
       await expect(file.read("fc.nc/z", { times: [0, 1], member: 2 })).rejects.toThrow(

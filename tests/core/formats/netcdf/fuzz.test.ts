@@ -1,5 +1,6 @@
 import { existsSync, openSync, readSync } from "node:fs";
 import { expect, test } from "vitest";
+import { LIBRARIES } from "../../../../app/codecs/libraries.ts";
 import { DataError } from "../../../../core/errors.ts";
 import { memorySource } from "../../../../core/formats/memory-source.ts";
 import { openFile } from "../../../../core/formats/open-file.ts";
@@ -64,7 +65,7 @@ function mutated(base: Uint8Array, random: () => number): Uint8Array {
 async function outcome(bytes: Uint8Array): Promise<"refused" | "opened" | "read"> {
   let found: "refused" | "opened" | "read" = "refused";
   try {
-    const file = await openFile(memorySource("mutated.nc", bytes));
+    const file = await openFile(memorySource("mutated.nc", bytes), LIBRARIES);
     found = "opened";
     for (const { key, levels } of file.contents.fields) {
       try {

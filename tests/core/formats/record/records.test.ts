@@ -1,4 +1,5 @@
 import { describe, expect, test } from "vitest";
+import { LIBRARIES } from "../../../../app/codecs/libraries.ts";
 import type { OpenFile } from "../../../../core/formats/dataset.ts";
 import { openFile } from "../../../../core/formats/open-file.ts";
 import { OpenRecords } from "../../../../core/formats/record/open-records.ts";
@@ -64,7 +65,7 @@ function made(file: string, { days, levels = [500, 250], members = null, name = 
 }
 
 async function opened(...files: ReturnType<typeof made>[]): Promise<OpenFile[]> {
-  return Promise.all(files.map((file) => openFile(file)));
+  return Promise.all(files.map((file) => openFile(file, LIBRARIES)));
 }
 
 /** First number of each step and level of what is read. */
@@ -188,7 +189,9 @@ describe("what stays apart", () => {
 
   test("what the user says is apart", async () => {
     const files = [made("a.nc", { days: [0, 1] }), made("b.nc", { days: [2, 3] })];
-    const open = await Promise.all(files.map((file) => openFile(file, [{ file: "b.nc", variable: "z", apart: true }])));
+    const open = await Promise.all(
+      files.map((file) => openFile(file, LIBRARIES, [{ file: "b.nc", variable: "z", apart: true }])),
+    );
     expect(recordFields(open.map(({ contents }) => contents)).fields.map(({ key }) => key)).toEqual([
       "a.nc/z",
       "b.nc/z",
