@@ -1,17 +1,16 @@
 import { DataError } from "../../errors.ts";
+import { BitReader, damaged } from "./aec-bits.ts";
 
 /** Flags of template 5.42, octet 22. */
 const SIGNED = 1;
 const PREPROCESSED = 8;
 const RESTRICTED = 16;
-const PADDED_SEGMENTS = 32;
+const PADDED = 32;
 
 /** Blocks after which a run of zero blocks ends at the latest (CCSDS 121.0-B-3, 3.4.3). */
 const ZERO_RUN = 64;
 /** Run length code for "all blocks up to there". */
 const REMAINDER = 5;
-/** The longest block is 64 samples of at most 32 bits; a unary code read in one go has under 25: a block cannot run further. */
-const PADDING = 1024;
 /** Samples of so many bits are whole numbers of 32 bits through all steps. */
 const NARROW = 28;
 
@@ -23,76 +22,6 @@ export interface AecForm {
   /** Blocks between reference samples. */
   readonly blocksPerReference: number;
   readonly flags: number;
-}
-
-function damaged(why: string): never {
-  throw new DataError("FormatError", `its CCSDS data are damaged: ${why}`);
-}
-
-/** Bits from a buffer with PADDING octets to spare. */
-class BitReader {
-  readonly view: DataView;
-  readonly endBit: number;
-  byte = 0;
-  bit = 0;
-
-  constructor(bytes: Uint8Array) {
-    const padded = new Uint8Array(bytes.length + PADDING);
-    padded.set(bytes);
-    this.view = new DataView(padded.buffer);
-    this.endBit = bytes.length * 8;
-  }
-
-  skip(n: number): void {
-    this.bit += n;
-    this.byte += this.bit >>> 3;
-    this.bit &= 7;
-  }
-
-  /** A whole number of 1 … 25 bits. */
-  short(n: number): number {
-    const value = (this.view.getInt32(this.byte) << this.bit) >>> (32 - n);
-    this.skip(n);
-    return value;
-  }
-
-  /** A whole number of 1 … 32 bits. */
-  long(n: number): number {
-    return n <= 25 ? this.short(n) : this.short(n - 16) * 65_536 + this.short(16);
-  }
-
-  /** Zeros before the next one, which is passed over too (a fundamental sequence, 3.2). */
-  unary(): number {
-    const zeros = Math.clz32(this.view.getInt32(this.byte) << this.bit);
-    if (zeros < 25) {
-      this.skip(zeros + 1);
-      return zeros;
-    }
-    return this.#longUnary();
-  }
-
-  #longUnary(): number {
-    let count = 0;
-    for (;;) {
-      // At most 25 bits of a word are sure to be the stream's.
-      const zeros = Math.clz32((this.view.getInt32(this.byte) << this.bit) | 0x7f);
-      if (zeros < 25) {
-        this.skip(zeros + 1);
-        return count + zeros;
-      }
-      count += 25;
-      this.skip(25);
-      this.requireInside();
-    }
-  }
-
-  requireInside(): void {
-    if (this.byte * 8 + this.bit > this.endBit) damaged("they end too early");
-  }
-
-  toOctet(): void {
-    if (this.bit > 0) this.skip(8 - this.bit);
-  }
 }
 
 /** Second extension: a code of both samples of a pair, γ = (a + b)(a + b + 1)/2 + b (3.4.2). */
@@ -155,7 +84,7 @@ function unmapped(samples: Float64Array, from: number, to: number, most: number)
   for (let i = from + 1; i < to; i++) {
     const mapped = samples[i] as number;
     const room = most - value;
-    const theta = value < room ? value : room;
+    const theta = Math.min(value, room);
     if (mapped <= 2 * theta) value += mapped % 2 === 0 ? mapped / 2 : -(mapped + 1) / 2;
     else value = theta === value ? mapped : most - mapped;
     samples[i] = value;
@@ -187,6 +116,8 @@ export function aecSamples(bytes: Uint8Array, form: AecForm, count: number): Flo
   if (![8, 16, 32, 64].includes(blockSize)) damaged(`blocks of ${blockSize} samples`);
   if (!(blocksPerReference >= 1 && blocksPerReference <= 4096)) damaged(`${blocksPerReference} blocks per reference`);
   if ((flags & SIGNED) !== 0) damaged("their samples are signed, which packed fields never are");
+  if ((flags & PADDED) !== 0)
+    throw new DataError("FormatError", "its CCSDS intervals are padded, which is not read; repack it (simple packing)");
   const isMapped = (flags & PREPROCESSED) !== 0;
   const reader = new BitReader(bytes);
   const idBits = optionBits(form);
@@ -200,7 +131,6 @@ export function aecSamples(bytes: Uint8Array, form: AecForm, count: number): Flo
   for (let block = 0; block < blocks; ) {
     const inInterval = block % blocksPerReference;
     const isFirst = inInterval === 0 && isMapped;
-    if (inInterval === 0 && block > 0 && (flags & PADDED_SEGMENTS) !== 0) reader.toOctet();
     const start = block * blockSize;
     const stop = start + blockSize;
     const option = reader.short(idBits);

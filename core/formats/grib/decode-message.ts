@@ -8,6 +8,7 @@ import type { Extent, GribEntry } from "./grib-index.ts";
 import { ieeeValues } from "./ieee-values.ts";
 import { imageValues } from "./image-packing.ts";
 import { ibmFloat, signed16, unsigned16, unsigned32 } from "./octets.ts";
+import { edition1PackingRefusal, edition2PackingRefusal } from "./packing-refusal.ts";
 import { constantValue, edition2Scaling, powerOfTen, scaledNumbers } from "./scaling.ts";
 import { SLACK, simpleValues } from "./simple-packing.ts";
 
@@ -22,10 +23,8 @@ function damaged(why: string): never {
 
 /** Numbers of edition 1's section 4, without those that the bitmap leaves out. */
 function edition1Values(section: Uint8Array, end: number, count: number, decimalScale: number): Float64Array {
-  const flags = section[3] as number;
-  if ((flags & 0x80) !== 0) damaged("its values are spectral coefficients");
-  if ((flags & 0x40) !== 0)
-    damaged("its values are in second-order packing, which is not read; repack them (simple packing) and open that");
+  const refusal = edition1PackingRefusal(section[3] as number);
+  if (refusal !== null) damaged(refusal);
   const scaling = {
     reference: ibmFloat(section, 6),
     binary: 2 ** signed16(section, 4),
@@ -33,16 +32,6 @@ function edition1Values(section: Uint8Array, end: number, count: number, decimal
   };
   return simpleValues(section, EDITION_1_HEAD, end, section[10] as number, count, scaling);
 }
-
-/** Names of templates of section 5 that are not read; FM 92 edition 2, code table 5.0. */
-const NOT_READ: Readonly<Record<number, string>> = {
-  1: "matrix packing",
-  50: "spectral packing",
-  51: "spectral packing",
-  53: "spectral packing",
-  61: "logarithmic packing",
-  200: "run length packing",
-};
 
 async function edition2Values(
   packing: Uint8Array,
@@ -52,6 +41,8 @@ async function edition2Values(
   libraries: FormatLibraries,
 ): Promise<Float64Array> {
   const template = unsigned16(packing, 9);
+  const refusal = edition2PackingRefusal(template);
+  if (refusal !== null) damaged(refusal);
   const least = template === 4 ? 12 : template === 42 ? 25 : 20;
   if (packing.length < least) damaged(`its section 5 has ${packing.length} bytes`);
   const at = EDITION_2_HEAD;
@@ -60,14 +51,7 @@ async function edition2Values(
   const bits = packing[19] as number;
   const scaling = edition2Scaling(packing);
   // 40000 and 40010 are the numbers of 5.40 and 5.41 before they were standard.
-  const isJpeg = template === 40 || template === 40_000;
   const isPng = template === 41 || template === 40_010;
-  if (template !== 0 && template !== 42 && !isJpeg && !isPng) {
-    const name = NOT_READ[template];
-    damaged(
-      `its packing, template 5.${template}${name === undefined ? "" : ` (${name})`}, is not read; repack it (simple packing) and open that`,
-    );
-  }
   if (bits === 0) return new Float64Array(count).fill(constantValue(scaling));
   if (template === 0) return simpleValues(data, at, end, bits, count, scaling);
   if (template === 42) {

@@ -6,6 +6,7 @@ import type { HeaderWindow } from "./header-window.ts";
 import { levelRefusal } from "./level-types.ts";
 import type { MessageList } from "./message-list.ts";
 import { signed16, unsigned16, unsigned24 } from "./octets.ts";
+import { edition1PackingRefusal } from "./packing-refusal.ts";
 import { ECMWF } from "./parameters.ts";
 import type { ScannedMessage } from "./scan.ts";
 
@@ -159,7 +160,11 @@ export async function edition1Message(window: HeaderWindow, at: number, list: Me
     data,
     decimalScale: signed16(product, 26),
   };
-  return { length: found.total, entries: [understood(base, product, productLength, grid, isKnownBitmap, list)] };
+  const flags4 = (await window.bytes(next, 4))[3] as number;
+  const unread = isKnownBitmap
+    ? edition1PackingRefusal(flags4)
+    : "its missing points are in a bitmap of its centre that is not in the file";
+  return { length: found.total, entries: [understood(base, product, productLength, grid, unread, list)] };
 }
 
 type Base = Pick<GribEntry, "at" | "edition" | "centre" | "parameter" | "packing" | "bitmap" | "data" | "decimalScale">;
@@ -169,7 +174,7 @@ function understood(
   product: Uint8Array,
   productLength: number,
   grid: Uint8Array | null,
-  isKnownBitmap: boolean,
+  unread: string | null,
   list: MessageList,
 ): GribEntry {
   const { isSpread, ...local } = localPart(product, productLength);
@@ -185,8 +190,7 @@ function understood(
     if (isSpread)
       throw new DataError("MetadataError", "it is the spread of an ensemble, not a state of the atmosphere");
     entry = { ...entry, ...times(product) };
-    if (!isKnownBitmap)
-      throw new DataError("FormatError", "its missing points are in a bitmap of its centre that is not in the file");
+    if (unread !== null) throw new DataError("FormatError", unread);
     return entry;
   } catch (error) {
     if (!(error instanceof DataError)) throw error;

@@ -6,10 +6,11 @@ import type { HeaderWindow } from "./header-window.ts";
 import { levelRefusal } from "./level-types.ts";
 import type { MessageList } from "./message-list.ts";
 import { signed8, signed32, spells, unsigned16, unsigned32, unsigned64 } from "./octets.ts";
+import { edition2PackingRefusal } from "./packing-refusal.ts";
 import type { ScannedMessage } from "./scan.ts";
 
 /** Octets used of each section. */
-const USED: Readonly<Record<number, number>> = { 1: 21, 3: 72, 4: 40, 6: 6 };
+const USED: Readonly<Record<number, number>> = { 1: 21, 3: 72, 4: 40, 5: 11, 6: 6 };
 const PASCAL = 100;
 
 /** Why fields of a product template are left out; FM 92, code table 4.0. Those not named: 0, 1, 2 and 60 are read. */
@@ -36,7 +37,7 @@ interface Sections {
   identification: Uint8Array | null;
   grid: Uint8Array | null;
   product: Product | null;
-  packing: Extent | null;
+  packing: { readonly extent: Extent; readonly template: number } | null;
   /** The last bitmap that stood in the message: later fields may use it again. */
   bitmap: Extent | null;
   indicator: number;
@@ -109,7 +110,7 @@ function understood(sections: Sections, data: Extent, at: number, discipline: nu
     member: memberOf(product),
     isEnsembleMean: template === 2,
     refusal: null,
-    packing,
+    packing: packing.extent,
     bitmap: indicator === 255 ? null : bitmap,
     data,
     decimalScale: 0,
@@ -129,6 +130,8 @@ function understood(sections: Sections, data: Extent, at: number, discipline: nu
     if (indicator !== 255 && indicator !== 254 && indicator !== 0)
       refuse("its missing points are in a bitmap of its centre that is not in the file");
     if (indicator !== 255 && bitmap === null) refuse("it uses a bitmap that does not stand before it in the message");
+    const unread = edition2PackingRefusal(packing.template);
+    if (unread !== null) refuse(unread);
     return entry;
   } catch (error) {
     if (!(error instanceof DataError)) throw error;
@@ -177,12 +180,12 @@ export async function edition2Message(window: HeaderWindow, at: number, list: Me
       if (number === 1) sections.identification = bytes;
       else if (number === 3) sections.grid = bytes;
       else if (number === 4) sections.product = { template: unsigned16(bytes, 7), bytes };
+      else if (number === 5) sections.packing = { extent, template: unsigned16(bytes, 9) };
       else {
         sections.indicator = bytes[5] as number;
         if (sections.indicator === 0) sections.bitmap = extent;
       }
-    } else if (number === 5) sections.packing = extent;
-    else if (number === 7) {
+    } else if (number === 7) {
       entries.push(understood(sections, extent, at, discipline, list));
       sections.indicator = -1;
       sections.packing = null;

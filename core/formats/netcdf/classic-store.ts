@@ -5,7 +5,7 @@ import type { StoredDimension, StoredVariable, VariableStore } from "../variable
 import { decodeBigEndian, isDecodable } from "./decoding-kernel.ts";
 import { classicHeader } from "./header.ts";
 import { PrefixEnds } from "./header-bytes.ts";
-import { batchesOf, runsOf } from "./runs.ts";
+import { type Batch, batchesOf, runsOf } from "./runs.ts";
 import { numbersOf } from "./swap.ts";
 import type { ClassicHeader, ClassicVariable } from "./types.ts";
 
@@ -13,6 +13,9 @@ const FIRST_PREFIX = 64 * 1024;
 /** No real header comes near this; a damaged one must not pull a whole file into memory. */
 const MOST_HEADER = 32 * 1024 * 1024;
 
+/** Bytes up to which reads go out many at a time. */
+const SMALL_READ = 1024;
+const READS_AT_ONCE = 64;
 const NO_BYTES = new Uint8Array(0);
 
 const FORMATS = {
@@ -134,16 +137,29 @@ export async function openNetcdfClassic(source: ByteSource): Promise<VariableSto
     const put = take(variable, values);
     const batches = batchesOf(runsOf(variable.begin, shape, start, count, strides, bytes), bytes);
     const longest = batches.reduce((most, { length }) => Math.max(most, length), 0);
-    // Reads that overlap in time each have memory of their own.
-    const memory = spare.length >= longest && longest > 0 ? spare : new Uint8Array(longest);
-    spare = NO_BYTES;
-    for (const batch of batches) {
-      const raw = await source.read(batch.offset, batch.length, memory);
+    const give = (raw: Uint8Array<ArrayBuffer>, batch: Batch): void => {
       for (const run of batch.runs) {
         const from = run.offset - batch.offset;
         const whole = from === 0 && run.values * bytes === raw.length;
         put(whole ? raw : raw.subarray(from, from + run.values * bytes), run.into);
       }
+    };
+    if (longest <= SMALL_READ) {
+      // The times of a long record lie one in each record, far apart: waiting for each in turn would take seconds.
+      for (let i = 0; i < batches.length; i += READS_AT_ONCE) {
+        const some = batches.slice(i, i + READS_AT_ONCE);
+        const raws = await Promise.all(some.map(({ offset, length }) => source.read(offset, length)));
+        some.forEach((batch, k) => {
+          give(raws[k] as Uint8Array<ArrayBuffer>, batch);
+        });
+      }
+      return;
+    }
+    // Reads that overlap in time each have memory of their own.
+    const memory = spare.length >= longest && longest > 0 ? spare : new Uint8Array(longest);
+    spare = NO_BYTES;
+    for (const batch of batches) {
+      give(await source.read(batch.offset, batch.length, memory), batch);
     }
     spare = memory;
   }

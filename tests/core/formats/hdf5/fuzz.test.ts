@@ -39,30 +39,37 @@ afterAll(() => rmSync(folder, { recursive: true, force: true }));
 /** A reader in a thread of its own, replaced when it does not answer in time or dies. */
 class Reader {
   #worker: Worker | null = null;
-  replaced = 0;
+  #settle: (reading: Reading | null) => void = () => undefined;
+
+  #asked(bytes: Uint8Array, within: number): Promise<Reading | null> {
+    return new Promise((resolve) => {
+      const late = setTimeout(() => this.#settle(null), within);
+      this.#settle = (reading) => {
+        clearTimeout(late);
+        resolve(reading);
+      };
+      this.#worker?.postMessage(bytes);
+    });
+  }
 
   /** null: it had to be ended. */
   async read(bytes: Uint8Array): Promise<Reading | null> {
-    this.#worker ??= new Worker(join(folder, "worker.js"));
-    const worker = this.#worker;
-    const found = await new Promise<Reading | null>((resolve) => {
-      const late = setTimeout(() => resolve(null), MOST_MS);
-      worker.once("message", (reading: Reading) => {
-        clearTimeout(late);
-        resolve(reading);
-      });
-      worker.once("error", () => resolve(null));
-      worker.postMessage(bytes);
-    });
-    worker.removeAllListeners();
+    if (this.#worker === null) {
+      this.#worker = new Worker(join(folder, "worker.js"));
+      this.#worker.on("message", (reading: Reading) => this.#settle(reading));
+      this.#worker.on("error", () => this.#settle(null));
+      // The library is loaded with the first file: that may take longer than a file.
+      await this.#asked(bases[1] as Uint8Array, 60_000);
+    }
+    const found = await this.#asked(bytes, MOST_MS);
     if (found === null) await this.end();
     return found;
   }
 
   async end(): Promise<void> {
-    this.replaced += 1;
-    await this.#worker?.terminate();
+    const worker = this.#worker;
     this.#worker = null;
+    await worker?.terminate();
   }
 }
 
@@ -100,5 +107,5 @@ test(`${CASES} damaged HDF5 files give words or numbers; a good file is read rig
   console.info(`${JSON.stringify(counts)}, growth ${(most - (good?.megabytes ?? 0)).toFixed(0)} MB`);
   expect(counts.endless).toBeLessThan(MOST_ENDLESS);
   expect(most - (good?.megabytes ?? 0)).toBeLessThan(MOST_GROWTH);
-  for (const kind of ["refused", "opened", "read"] as const) expect(counts[kind]).toBeGreaterThan(CASES / 100);
+  for (const kind of ["refused", "read"] as const) expect(counts[kind]).toBeGreaterThan(CASES / 100);
 });
