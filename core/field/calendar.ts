@@ -73,15 +73,16 @@ function daysByRule(year: number, month: number, day: number, gregorian: boolean
 }
 // 1970-01-01 by each rule; on that day the Julian date is 13 days behind.
 const EPOCH_GREGORIAN = daysByRule(1970, 1, 1, true);
+const EPOCH_JULIAN = daysByRule(1970, 1, 1, false);
 const EPOCH_JULIAN_DATE = daysByRule(1969, 12, 19, false);
 
-/** Whole days from 1970-01-01 (Gregorian for the real calendars, the calendar's own for the others) to a date. */
+/** Whole days from the calendar's own 1970-01-01 to a date, as a file's "days since 1970-01-01" counts them. */
 function dayNumber(year: number, month: number, day: number, calendar: Calendar): number {
   switch (calendar) {
     case "proleptic_gregorian":
       return daysByRule(year, month, day, true) - EPOCH_GREGORIAN;
     case "julian":
-      return daysByRule(year, month, day, false) - EPOCH_JULIAN_DATE;
+      return daysByRule(year, month, day, false) - EPOCH_JULIAN;
     case "standard": {
       const gregorian = daysByRule(year, month, day, true) - EPOCH_GREGORIAN;
       return gregorian >= REFORM ? gregorian : daysByRule(year, month, day, false) - EPOCH_JULIAN_DATE;
