@@ -34,10 +34,8 @@ export function decodedPng(image: Uint8Array): GreyImage {
     }
     return { width, height, values };
   } catch (error) {
-    throw new DataError(
-      "FormatError",
-      `a PNG image cannot be read (${error instanceof Error ? error.message : error}); the message is damaged`,
-      error,
-    );
+    // Where the data end early the library names what is not there.
+    const reason = error instanceof Error ? error.message.replace(/:? undefined/, "") : String(error);
+    throw new DataError("FormatError", `a PNG image cannot be read (${reason}); the message is damaged`, error);
   }
 }

@@ -40,31 +40,52 @@ export function amplitudeParts(
   const phaseReasons = new Uint8Array(size);
   const shareReasons = new Uint8Array(size);
   let careful = 0;
+  // Once for each wave of the result, not for each of millions of numbers: A = size · |c|, share = spread · A²/variance.
+  const sizes = Float64Array.from(waves, (k) => (k === 0 || isNyquist(k, nLon) ? 1 : 2));
+  const spreads = Float64Array.from(waves, (k) => (isNyquist(k, nLon) ? 1 : 0.5));
+  const perDegree = 1 / RADIANS_PER_DEGREE;
+  const count = waves.length;
+  const first = waves[0];
+  const step = 2 * kept;
+  let place = 0;
+  let t = 0;
   for (let r = 0, at = 0; r < rows; r++) {
     const total = variance[r];
-    const step = Math.floor(r / places);
-    let path = (r - step * places) * waves.length * steps + step;
-    for (const k of waves) {
-      const from = 2 * (r * kept + k);
+    let path = place * count * steps + t;
+    let from = r * step + 2 * first;
+    for (let w = 0; w < count; w++) {
       const re = c[from];
       const im = c[from + 1];
-      const a = waveAmplitude(re, im, k, nLon);
-      amplitude[at] = a;
+      from += 2;
+      const a = sizes[w] * Math.sqrt(re * re + im * im);
       const angle = Math.atan2(im, re);
       angles[path] = angle;
       paths[2 * path] = re;
       paths[2 * path + 1] = im;
       path += steps;
-      ridge[at] = a === 0 ? Number.NaN : ridgeOfAngle(angle, k);
-      share[at] = (isNyquist(k, nLon) ? a * a : (a * a) / 2) / total;
-      phase[at] = a === 0 ? Number.NaN : angle / RADIANS_PER_DEGREE;
-      const absent = Number.isNaN(a) ? frame.absence(firstRow + r, choice.ofAnomaly) : 0;
-      reasons[at] = absent;
-      // A wave of nothing has no ridge, and a row of one value (a pole) no variance to share.
-      phaseReasons[at] = a === 0 ? SMALL : absent;
-      shareReasons[at] = total === 0 ? SMALL : absent;
-      careful += phaseReasons[at] | shareReasons[at];
+      amplitude[at] = a;
+      share[at] = (spreads[w] * a * a) / total;
+      if (a > 0 && total !== 0) {
+        const cycle = 360 / (first + w);
+        const longitude = (-angle * perDegree) / (first + w);
+        ridge[at] = longitude < 0 ? (longitude + cycle < cycle ? longitude + cycle : 0) : longitude;
+        phase[at] = angle * perDegree;
+      } else {
+        ridge[at] = a === 0 ? Number.NaN : ridgeOfAngle(angle, first + w);
+        phase[at] = a === 0 ? Number.NaN : angle * perDegree;
+        const absent = Number.isNaN(a) ? frame.absence(firstRow + r, choice.ofAnomaly) : 0;
+        reasons[at] = absent;
+        // A wave of nothing has no ridge, and a row of one value (a pole) no variance to share.
+        phaseReasons[at] = a === 0 ? SMALL : absent;
+        shareReasons[at] = total === 0 ? SMALL : absent;
+        careful += phaseReasons[at] | shareReasons[at];
+      }
       at += 1;
+    }
+    place += 1;
+    if (place === places) {
+      place = 0;
+      t += 1;
     }
   }
   const made = { amplitude, ridge, share, phase, paths, angles };

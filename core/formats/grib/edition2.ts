@@ -79,9 +79,9 @@ function pressureOf(product: Uint8Array): number {
   const scaled = scale > 0 ? value / 10 ** scale : value * 10 ** -scale;
   if (type !== PASCAL) throw new DataError("MetadataError", levelRefusal(2, type, scaled));
   const second = product[28] as number;
-  if (second !== 255 && second !== type) throw new DataError("MetadataError", levelRefusal(2, second, Number.NaN));
-  if (second !== 255 && (unsigned32(product, 30) !== unsigned32(product, 24) || product[29] !== product[23]))
-    throw new DataError("MetadataError", "it lies on a layer between two pressure levels, not on one");
+  const isSame = second === type && product[29] === product[23] && unsigned32(product, 30) === unsigned32(product, 24);
+  if (second !== 255 && !isSame)
+    throw new DataError("MetadataError", "it lies on a layer between two levels, not on one pressure level");
   if (!(scaled > 0 && scaled < 1e7)) throw new DataError("MetadataError", `its pressure is ${scaled} Pa`);
   return Math.round(scaled * 1e7) / 1e9;
 }

@@ -1,5 +1,5 @@
-import { isoText } from "../../field/calendar.ts";
 import { SECONDS_PER_DAY } from "../../constants.ts";
+import { isoText } from "../../field/calendar.ts";
 import type { GribEntry } from "./grib-index.ts";
 import { MemberNumbers } from "./member-numbers.ts";
 
@@ -7,7 +7,7 @@ import { MemberNumbers } from "./member-numbers.ts";
 const MOST_NAMED = 3;
 
 /** Different numbers, increasing. */
-export function sorted(values: Iterable<number>): number[] {
+function sorted(values: Iterable<number>): number[] {
   return [...new Set(values)].sort((a, b) => a - b);
 }
 

@@ -5,13 +5,12 @@ import type { Conversion } from "../../units/units.ts";
 import { startText } from "../cf/forecast-steps.ts";
 import { recognition } from "../cf/quantity-of.ts";
 import type { Correction, FieldDescription, LeftOut } from "../dataset.ts";
+import { Cells, cellNotes } from "./field-cells.ts";
 import type { GribEntry, GribIndex } from "./grib-index.ts";
 import { type GridAxes, gridAxes } from "./grid-axes.ts";
 import { MemberNumbers } from "./member-numbers.ts";
-import { Cells, cellNotes, sorted } from "./field-cells.ts";
 import { type Parameter, parameterOf } from "./parameters.ts";
 import { Refusals } from "./refusals.ts";
-
 
 /** A field of a GRIB file: messages of one parameter, grid and forecast. */
 export interface GribField {
@@ -120,12 +119,16 @@ interface Run {
 
 /** Starts with a step beyond 0 are forecasts, each of its own; all others are analyses, one record together. */
 function runsOf(entries: readonly GribEntry[]): Run[] {
-  const starts = new Set(entries.filter(({ start, valid }) => valid !== start).map(({ start }) => start));
-  const analyses = entries.filter(({ start }) => !starts.has(start));
-  return [
-    ...(analyses.length === 0 ? [] : [{ start: null, entries: analyses }]),
-    ...sorted(starts).map((start) => ({ start, entries: entries.filter((entry) => entry.start === start) })),
-  ];
+  const byStart = new Map<number, GribEntry[]>();
+  for (const entry of entries) {
+    const held = byStart.get(entry.start);
+    if (held === undefined) byStart.set(entry.start, [entry]);
+    else held.push(entry);
+  }
+  const runs = [...byStart].sort(([a], [b]) => a - b).map(([start, own]) => ({ start, entries: own }));
+  const isForecast = (run: Run): boolean => run.entries.some(({ start, valid }) => valid !== start);
+  const analyses = runs.filter((run) => !isForecast(run)).flatMap((run) => run.entries);
+  return [...(analyses.length === 0 ? [] : [{ start: null, entries: analyses }]), ...runs.filter(isForecast)];
 }
 
 /**

@@ -5,6 +5,8 @@ import { type CalendarDate, dateOf, daysInMonth, daysOf } from "../../field/cale
 const SECONDS: Readonly<Record<number, number>> = { 0: 60, 1: 3600, 2: 86_400, 10: 10_800, 11: 21_600, 12: 43_200 };
 /** Months per unit: month, year, decade, 30 years, century. */
 const MONTHS: Readonly<Record<number, number>> = { 3: 1, 4: 12, 5: 120, 6: 360, 7: 1200 };
+/** Ten thousand years; only a damaged header says more. */
+const LONGEST = 10_000 * 366 * 86_400;
 const EDITION_1_ONLY: Readonly<Record<number, number>> = { 13: 900, 14: 1800, 254: 1 };
 const EDITION_2_ONLY: Readonly<Record<number, number>> = { 13: 1 };
 
@@ -24,7 +26,11 @@ export function secondsOf(date: CalendarDate): number {
 export function validSeconds(edition: 1 | 2, start: number, step: number, unit: number): number {
   if (step === 0) return start;
   const seconds = SECONDS[unit] ?? (edition === 1 ? EDITION_1_ONLY : EDITION_2_ONLY)[unit];
-  if (seconds !== undefined) return start + step * seconds;
+  if (seconds !== undefined) {
+    if (Math.abs(step * seconds) > LONGEST)
+      throw new DataError("MetadataError", `its forecast step of ${step * seconds} seconds is longer than any`);
+    return start + step * seconds;
+  }
   const months = MONTHS[unit];
   if (months === undefined)
     throw new DataError("MetadataError", `its forecast step is in a unit of time, number ${unit}, that is not known`);

@@ -51,8 +51,8 @@ function gaussianRows({ nj, parallels, firstLat, scan }: GridDefinition): Float6
   let first = 0;
   for (let i = 1; i < all.length; i++)
     if (Math.abs((all[i] as number) - firstLat) < Math.abs((all[first] as number) - firstLat)) first = i;
-  // Half a row off is the wrong row.
-  if (Math.abs((all[first] as number) - firstLat) > 45 / parallels)
+  // Rounding moves it by far less than a tenth of a row.
+  if (Math.abs((all[first] as number) - firstLat) > 9 / parallels)
     throw new DataError("GridError", `its first row at ${firstLat}° is none of a Gaussian grid of ${parallels} rows`);
   if (first + nj > all.length)
     throw new DataError("GridError", `its ${nj} rows from ${firstLat}° on run beyond the pole`);

@@ -7,10 +7,14 @@ import { centreName } from "./centres.ts";
 import { type GribField, gribFields } from "./field-groups.ts";
 import type { GribIndex } from "./grib-index.ts";
 import { MessageCache } from "./message-cache.ts";
+import { spells } from "./octets.ts";
 import { type ScanHooks, scannedIndex } from "./scan.ts";
 import { copyRows } from "./scan-order.ts";
 
-export { looksLikeGrib } from "./scan.ts";
+/** First bytes of a GRIB file, of either edition. */
+export function looksLikeGrib(first: Uint8Array): boolean {
+  return spells(first, 0, "GRIB");
+}
 
 export interface GribHooks extends ScanHooks {
   /** From an earlier opening; used if it fits the file's size, else made anew. */

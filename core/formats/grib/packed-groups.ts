@@ -38,6 +38,12 @@ export interface Groups {
   readonly at: number;
 }
 
+/**
+ * Read how the groups are made (FM 92, template 7.2).
+ *
+ * @param at First octet of their references; `end` is the first after the section.
+ * @throws FormatError if they do not fit, or do not hold `count` values together.
+ */
 export function groupsOf(section: Uint8Array, view: DataView, at: number, end: number, count: number): Groups {
   const number = unsigned32(section, 31);
   const referenceBits = section[19] as number;
@@ -68,7 +74,12 @@ export function groupsOf(section: Uint8Array, view: DataView, at: number, end: n
   return { references, widths, lengths, at: at + sizes[0] + sizes[1] + sizes[2] };
 }
 
-/** Packed numbers of all groups, reference added; NaN where a number stands for "missing". */
+/**
+ * Packed numbers of all groups, reference added; NaN where a number stands for "missing".
+ *
+ * @param missingKinds 0, 1 (primary) or 2 (primary and secondary): numbers with all bits set, or all but the last.
+ * @throws FormatError if a group reaches beyond the section.
+ */
 export function packedNumbers(
   section: Uint8Array,
   view: DataView,

@@ -27,11 +27,6 @@ const DENSE = 32_768;
 /** Damage told one by one; a file full of it is told in one line. */
 const MOST_NOTES = 20;
 
-/** First bytes of a GRIB file, of either edition. */
-export function looksLikeGrib(first: Uint8Array): boolean {
-  return spells(first, 0, "GRIB");
-}
-
 async function messageAt(window: HeaderWindow, at: number, list: MessageList): Promise<ScannedMessage> {
   const edition = (await window.bytes(at, 8))[7] as number;
   if (edition !== 1 && edition !== 2)
