@@ -70,10 +70,10 @@ test("every day of every calendar goes there and back", () => {
       const at = days + second / 86_400;
       const date = dateOf(at, calendar);
       const back = daysOf(date, calendar);
-      expect(Math.round((back - at) * 86_400)).toBe(0);
+      expect(Math.abs(back - at) * 86_400).toBeLessThan(0.5); // dates are whole seconds
       expect(date.day).toBeLessThanOrEqual(daysInMonth(date.year, date.month, calendar));
       const text = isoText(at, calendar);
-      expect(Math.round((daysOfText(text, calendar) - at) * 86_400)).toBe(0);
+      expect(Math.abs(daysOfText(text, calendar) - at) * 86_400).toBeLessThan(0.5);
     }),
   );
 });
