@@ -40,6 +40,7 @@ export async function openFileSource(path: string): Promise<FileSource> {
   return {
     name,
     size: info.size,
+    modified: info.mtimeMs,
     async read(offset, length, into) {
       requireInside(name, info.size, offset, length);
       const bytes = into !== undefined && into.length >= length ? into.subarray(0, length) : new Uint8Array(length);

@@ -13,6 +13,7 @@ function fileSource(file: File): ByteSource {
   return {
     name: file.name,
     size: file.size,
+    modified: file.lastModified,
     async read(offset, length) {
       requireInside(file.name, file.size, offset, length);
       try {

@@ -4,6 +4,8 @@ export interface ByteSource {
   readonly name: string;
   /** Bytes in all. */
   readonly size: number;
+  /** When it was last changed, milliseconds since 1970; absent where that is not known. */
+  readonly modified?: number;
   /**
    * Exactly `length` bytes from `offset`, in a buffer of their own unless `into` is given.
    *

@@ -8,6 +8,14 @@ export interface FormatLibraries {
   readonly png: () => Promise<PngDecoder>;
 }
 
+/** Keeps what a long scan of a file found, for the next opening of the same file. */
+export interface IndexKeeper {
+  /** What was kept of this file, as plain data; null if nothing was, or the file has changed since. */
+  held(source: ByteSource): Promise<unknown>;
+  /** A failure to keep is no failure to open: this never throws. */
+  keep(source: ByteSource, index: unknown): Promise<void>;
+}
+
 /** Grey values of an image, row by row from the top, as whole numbers. */
 export interface GreyImage {
   readonly width: number;

@@ -72,3 +72,22 @@ export interface GribIndex {
   /** Damage, in words. */
   readonly notes: readonly string[];
 }
+
+/**
+ * An index that was kept of a file as plain data; null if it is none, or of a file of another size.
+ *
+ * Only what this program wrote itself is handed in; whatever else stands there must not pass for an index all the same.
+ */
+export function keptIndex(held: unknown, source: { readonly size: number }): GribIndex | null {
+  if (typeof held !== "object" || held === null) return null;
+  const { version, size, grids, entries, notes, messages } = held as Partial<Record<keyof GribIndex, unknown>>;
+  const isWhole =
+    version === 1 &&
+    size === source.size &&
+    Array.isArray(grids) &&
+    Array.isArray(entries) &&
+    entries.length > 0 &&
+    Array.isArray(notes) &&
+    typeof messages === "number";
+  return isWhole ? (held as GribIndex) : null;
+}

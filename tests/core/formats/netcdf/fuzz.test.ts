@@ -7,7 +7,7 @@ import { openFile } from "../../../../core/formats/open-file.ts";
 import { dataFile } from "../data-folder.ts";
 import { bytesOf, referenceBytes, smallFile } from "../written.ts";
 
-const CASES = 2000;
+const CASES = 3000;
 const MOST_MS = 2000; // a case takes under 10 ms here; this is for a machine that is busy
 const MOST_GROWTH = 256 * 2 ** 20; // what a run may hold on to; the bases are under 1 MB together
 
