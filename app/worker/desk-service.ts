@@ -3,6 +3,7 @@ import type { BackgroundSpec } from "../../core/background/spec.ts";
 import { DataError } from "../../core/errors.ts";
 import type { IndexRange } from "../../core/field/axes.ts";
 import type { Correction, FieldDescription, FieldReader, FileContents, OpenFile } from "../../core/formats/dataset.ts";
+import type { OpenHooks } from "../../core/formats/open-file.ts";
 import { OpenRecords } from "../../core/formats/record/open-records.ts";
 import { BackgroundPasses, passJobs } from "../../core/recipe/background-passes.ts";
 import type { Crew } from "../../core/recipe/crew.ts";
@@ -33,7 +34,7 @@ export interface DeskFile {
 }
 
 export interface DeskParts {
-  readonly open: (file: DeskFile) => Promise<OpenFile>;
+  readonly open: (file: DeskFile, hooks?: OpenHooks) => Promise<OpenFile>;
   /** Workers that open the same files for themselves. */
   readonly crew: Crew & { setFiles(files: readonly CrewFile<DeskFile>[]): void };
   readonly program: string;
@@ -60,6 +61,7 @@ export class DeskService implements Desk {
   #passes = new BackgroundPasses();
   #open = new OpenRecords([]);
   #counter = 0;
+  #openings = 0;
 
   constructor(parts: DeskParts) {
     this.#parts = parts;
@@ -158,7 +160,18 @@ export class DeskService implements Desk {
 
   /** Open a file and put it in the place of an earlier one of its name, which stays if this one does not open. */
   async #hold(source: SourceDescription, corrections: readonly Correction[]): Promise<FileContents> {
-    const file = await this.#parts.open({ source, corrections });
+    // The window numbers its own tasks from 1 up.
+    this.#openings -= 1;
+    const file = await this.#tasks.run(this.#openings, ({ signal, report }) => {
+      const started = Date.now();
+      const progress = (done: number): void =>
+        report(
+          `Reading ${sourceName(source)}`,
+          done,
+          done > 0 ? ((Date.now() - started) / 1000) * (1 / done - 1) : null,
+        );
+      return this.#parts.open({ source, corrections }, { signal, progress });
+    });
     const name = file.contents.file;
     const earlier = this.#held.get(name);
     this.#held.set(name, { id: ++this.#counter, source, file, corrections });

@@ -56,6 +56,34 @@ const Z = { key: "a.nc/z", level: 1, member: null };
 const NONE = { kind: "none" } as const;
 
 describe("files", () => {
+  test("a long opening tells how far it is, and can be cancelled", async () => {
+    const { service } = desk();
+    const told: { task: number; title: string; done: number }[] = [];
+    await service.onProgress((progress) => told.push(progress));
+    const slow = new DeskService({
+      open: async (_, hooks) => {
+        const { progress, signal } = hooks ?? {};
+        progress?.(0.1);
+        await new Promise((resolve) => setTimeout(resolve, 520)); // shorter work shows no progress
+        progress?.(0.5);
+        if (signal?.aborted) throw new Error("stopped");
+        return fakeFile("slow.grib", []);
+      },
+      program: "test",
+      crew: { size: 1, run: () => Promise.reject(new Error("none")), setFiles: () => undefined },
+    });
+    await slow.onProgress((progress) => told.push(progress));
+    await slow.open([source("slow.grib")], []);
+    expect(told.map(({ title, done }) => [title, done])).toEqual([
+      ["Reading slow.grib", 0.5],
+      ["Reading slow.grib", 1],
+    ]);
+    const opening = slow.open([source("slow.grib")], []);
+    await new Promise((resolve) => setTimeout(resolve, 20));
+    await slow.cancel((told[0]?.task ?? 0) - 1);
+    expect((await opening).refused[0]?.words).toBe("The task was cancelled.");
+  });
+
   test("what opens is told, what does not is refused in words, and the rest stays open", async () => {
     const { service } = desk();
     const report = await service.open([source("a.nc"), source("bad.nc"), source("b.nc")], []);
