@@ -73,7 +73,13 @@ export interface Hdf5File {
   readonly notes: readonly string[];
   /** Path of the dataset that is the scale of a dimension; null where there is none. Slow, and endless on some damaged files. */
   scale(path: string, dimension: number): string | null;
-  /** Numbers of a hyperslab as they are stored, row-major. @throws FormatError in words. */
-  read(path: string, start: readonly number[], count: readonly number[]): Hdf5Numbers;
+  /**
+   * Numbers of a hyperslab as they are stored, row-major, given to `take`.
+   *
+   * The array is the library's own memory, gone once `take` returns.
+   *
+   * @throws FormatError in words.
+   */
+  read<T>(path: string, start: readonly number[], count: readonly number[], take: (numbers: Hdf5Numbers) => T): T;
   close(): void;
 }

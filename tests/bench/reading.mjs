@@ -1,4 +1,5 @@
-// `npm run bench:reading`: how fast files are read whole, beside numpy, h5py and GDAL. Prints nanoseconds a point; it judges nothing.
+// `npm run bench:reading`: how fast files are read whole, beside numpy, h5py and GDAL. Prints nanoseconds a point; it judges
+// nothing. PYTHON names a python with numpy, scipy and netCDF4; h5py and GDAL's module are used where they are.
 import { spawnSync } from "node:child_process";
 import { existsSync, mkdtempSync, rmSync, writeFileSync } from "node:fs";
 import { tmpdir } from "node:os";
@@ -45,7 +46,9 @@ try {
   if (gribs.length === 0) console.log(`No GRIB file in ${data}; set ISOHYPSE_DATA to a folder that has them.`);
   const files = [join(folder, "classic.nc"), join(folder, "deflate.nc"), ...gribs];
   const ours = JSON.parse(ran(process.execPath, [join(folder, "side/side.js"), ...files]));
-  const theirs = JSON.parse(ran(python, [join(here, "reading.py"), "read", folder, ...gribs]));
+  // Libraries may say things of their own before the last line.
+  const said = ran(python, [join(here, "reading.py"), "read", folder, ...gribs]).trim();
+  const theirs = JSON.parse(said.slice(said.lastIndexOf("\n") + 1));
   console.log(
     `\n${"file".padEnd(34)}${"points".padStart(12)}   ns a point, open and read whole: here, there, their rate / ours`,
   );

@@ -1,5 +1,6 @@
 import { DataError } from "../../errors.ts";
 import type { ByteSource } from "../byte-source.ts";
+import { type Decoding, decodeInPlace } from "../cf/decoding.ts";
 import type { Hdf5Dataset, Hdf5Library, Hdf5Numbers } from "../libraries.ts";
 import type { AttributeValue, StoredDimension, StoredVariable, VariableStore } from "../variable-store.ts";
 import { type Box, boxSize, cutOut, isInside, paste, wholeChunks } from "./chunk-boxes.ts";
@@ -34,9 +35,33 @@ function shownAttributes(attributes: Readonly<Record<string, AttributeValue>>): 
 }
 
 function doubles(numbers: Hdf5Numbers): Float64Array {
-  if (numbers instanceof Float64Array) return numbers;
   if (numbers instanceof BigInt64Array || numbers instanceof BigUint64Array) return Float64Array.from(numbers, Number);
   return new Float64Array(numbers);
+}
+
+/** Stored numbers as values in one pass: missing ones NaN, packing undone. The plain kinds alone; null for the rest. */
+function decoded(numbers: Hdf5Numbers, how: Decoding, into: Float64Array | undefined): Float64Array | null {
+  const { missing, least, most, wrap, scale, offset } = how;
+  const isPlain =
+    (numbers instanceof Float32Array || numbers instanceof Int16Array) &&
+    missing.length <= 2 &&
+    wrap === 0 &&
+    least === Number.NEGATIVE_INFINITY &&
+    most === Number.POSITIVE_INFINITY;
+  if (!isPlain) return null;
+  const [a = Number.NaN, b = Number.NaN] = missing;
+  const out = into?.length === numbers.length ? into : new Float64Array(numbers.length);
+  if (scale === 1 && offset === 0)
+    for (let i = 0; i < out.length; i++) {
+      const x = numbers[i] as number;
+      out[i] = x === a || x === b ? Number.NaN : x;
+    }
+  else
+    for (let i = 0; i < out.length; i++) {
+      const x = numbers[i] as number;
+      out[i] = x === a || x === b ? Number.NaN : x * scale + offset;
+    }
+  return out;
 }
 
 interface Kept {
@@ -111,10 +136,8 @@ export async function openNetcdf4(source: ByteSource, library: Hdf5Library): Pro
       );
   }
 
-  async function readNumbers(name: string, start: readonly number[], count: readonly number[]): Promise<Float64Array> {
-    const set = sets.get(name);
-    if (set === undefined || set.type === "text")
-      throw new DataError("NotFoundError", `${source.name} holds no variable ${name} of numbers.`);
+  /** @throws ShapeError for a slab that is not inside the variable. */
+  function requireSlab(name: string, start: readonly number[], count: readonly number[]): void {
     const shape = shapes.get(name) as number[];
     const fits =
       start.length === shape.length &&
@@ -129,6 +152,13 @@ export async function openNetcdf4(source: ByteSource, library: Hdf5Library): Pro
         "ShapeError",
         `${source.name}, ${name}: the slab from [${start}] of size [${count}] is not inside the variable's [${shape}].`,
       );
+  }
+
+  async function readNumbers(name: string, start: readonly number[], count: readonly number[]): Promise<Float64Array> {
+    const set = sets.get(name);
+    if (set === undefined || set.type === "text")
+      throw new DataError("NotFoundError", `${source.name} holds no variable ${name} of numbers.`);
+    requireSlab(name, start, count);
     requireFilters(set);
     const box: Box = { start, count };
     const there = { start, count: count.map((n, d) => Math.min(n, (set.shape[d] as number) - (start[d] as number))) };
@@ -137,6 +167,31 @@ export async function openNetcdf4(source: ByteSource, library: Hdf5Library): Pro
     if (there.count.some((n) => n <= 0)) return out;
     paste(await stored(set, name, there), there, out, box);
     return out;
+  }
+
+  async function readDecoded(
+    name: string,
+    start: readonly number[],
+    count: readonly number[],
+    how: Decoding,
+    into?: Float64Array,
+  ): Promise<Float64Array> {
+    const set = sets.get(name);
+    const isStraight =
+      set !== undefined &&
+      set.type !== "text" &&
+      kept.get(name) === undefined &&
+      set.shape.every((n, d) => (start[d] as number) + (count[d] as number) <= n) &&
+      boxSize({ start, count }) > 0 &&
+      (set.chunks === null ||
+        boxSize(wholeChunks({ start, count }, set.chunks, set.shape)) === boxSize({ start, count }));
+    if (isStraight) {
+      requireSlab(name, start, count);
+      requireFilters(set);
+      const values = file.read(set.path, start, count, (numbers) => decoded(numbers, how, into));
+      if (values !== null) return values;
+    }
+    return decodeInPlace(await readNumbers(name, start, count), how);
   }
 
   /** What the dataset holds of a box inside it. */
@@ -149,8 +204,8 @@ export async function openNetcdf4(source: ByteSource, library: Hdf5Library): Pro
     if (held !== undefined && isInside(box, held.box)) return cutOut(held.values, held.box, box);
     const whole = chunks === null ? box : wholeChunks(box, chunks, shape);
     const more = boxSize(whole);
-    if (more === size || more > MOST_KEPT) return doubles(file.read(path, start, count));
-    const values = doubles(file.read(path, whole.start, whole.count));
+    if (more === size || more > MOST_KEPT) return file.read(path, start, count, doubles);
+    const values = file.read(path, whole.start, whole.count, doubles);
     keep(name, whole, values);
     return cutOut(values, whole, box);
   }
@@ -163,6 +218,7 @@ export async function openNetcdf4(source: ByteSource, library: Hdf5Library): Pro
     attributes: shownAttributes(file.attributes),
     notes,
     readNumbers,
+    readDecoded,
     async close() {
       kept.clear();
       file.close();
