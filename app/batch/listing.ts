@@ -22,7 +22,9 @@ function fieldListing(field: FieldDescription): string {
     `    ${field.quantity ?? "not recognised"}: ${field.why}`,
     `    ${n} ${what}${ends}`,
     ...(reference === null ? [] : [`    forecast from ${isoText(reference, steps.calendar)}`]),
-    ...(members === null ? [] : [`    ${members.length} members: ${members.join(", ")}`]),
+    ...(members === null
+      ? []
+      : [`    ${members.length} member${members.length === 1 ? "" : "s"}: ${members.join(", ")}`]),
     levels === null ? "    no level stated" : `    ${levels.length} levels, hPa: ${Array.from(levels).join(", ")}`,
     `    ${grid.lat.length} rows ${span(grid.lat, 4)} °N, ${grid.lon.length} columns ${span(grid.lon, 4)} °E${circle}`,
   ].join("\n");

@@ -3,6 +3,7 @@ import type { Calendar } from "./axes.ts";
 
 /** A moment in some calendar, UTC. */
 export interface CalendarDate {
+  /** As ISO 8601 and astronomers count: 1 is preceded by 0, in every calendar. */
   readonly year: number;
   /** 1 … 12. */
   readonly month: number;
@@ -27,7 +28,9 @@ const NAMES: Readonly<Record<string, Calendar>> = {
 
 /** The calendar behind a CF `calendar` attribute (CF conventions, 4.4.1); null if it is not one of them. Absent means standard. */
 export function calendarNamed(attribute: string | undefined): Calendar | null {
-  return attribute === undefined ? "standard" : (NAMES[attribute.trim().toLowerCase()] ?? null);
+  const name = (attribute ?? "standard").trim().toLowerCase();
+  // Of the table alone: an attribute may well be "constructor".
+  return Object.hasOwn(NAMES, name) ? (NAMES[name] as Calendar) : null;
 }
 
 const DAYS_BEFORE = [0, 31, 59, 90, 120, 151, 181, 212, 243, 273, 304, 334];

@@ -38,10 +38,11 @@ export function stepsOfPeriod(
   if (from > to && !(isWholeDay && from < to + 1))
     throw new DataError("RecipeError", `period: ${period[0]} comes after ${period[1]}; the earlier comes first`);
   const slack = isTime ? HALF_SECOND : 0;
-  const first = steps.values.findIndex((value) => value >= from - slack);
-  const isBefore = (value: number) => (isWholeDay ? value < to + 1 - slack : value <= to + slack);
-  const last = steps.values.findLastIndex(isBefore);
-  if (first < 0 || last < first) {
+  const isInside = (value: number) =>
+    value >= from - slack && (isWholeDay ? value < to + 1 - slack : value <= to + slack);
+  const first = steps.values.findIndex(isInside);
+  const last = steps.values.findLastIndex(isInside);
+  if (first < 0) {
     const ends = `${stepText(steps, 0)} to ${stepText(steps, n - 1)}`;
     throw new DataError(
       "RecipeError",
@@ -49,8 +50,7 @@ export function stepsOfPeriod(
     );
   }
   // Times increase; the numbers of a record need not, and then one range of steps is not the period.
-  const between = steps.values.subarray(first, last + 1);
-  if (!between.every((value) => value >= from - slack && isBefore(value)))
+  if (!steps.values.subarray(first, last + 1).every(isInside))
     throw new DataError(
       "RecipeError",
       `period: the numbers of "${steps.name}" are not in order, so ${period[0]} to ${period[1]} is not one stretch of the record; sort the file along it`,

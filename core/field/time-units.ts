@@ -17,6 +17,9 @@ export function daysPerUnit(unit: string): number | null {
   return DAYS_PER.find(([spelling]) => spelling.test(plain))?.[1] ?? null;
 }
 
+/** Hours; zones in use reach from −12 to +14. */
+const LARGEST_ZONE = 14;
+
 export interface TimeUnits {
   /** Days since 1970-01-01 of the reference moment. */
   readonly origin: number;
@@ -51,7 +54,10 @@ export function timeUnits(text: string, calendar: Calendar): TimeUnits {
     );
   const part = (i: number): number => Number(match[i] ?? 0);
   const zone = /^([+-])(\d{1,2}):?(\d{2})?$/.exec(match[8] ?? "");
-  const shift = zone === null ? 0 : (zone[1] === "-" ? -1 : 1) * (Number(zone[2]) / 24 + Number(zone[3] ?? 0) / 1440);
+  const [zoneHours, zoneMinutes] = [Number(zone?.[2] ?? 0), Number(zone?.[3] ?? 0)];
+  if (zoneMinutes > 59 || zoneHours + zoneMinutes / 60 > LARGEST_ZONE)
+    throw new DataError("MetadataError", `time units "${text}": ${match[8]} is no time zone.`);
+  const shift = (zone?.[1] === "-" ? -1 : 1) * (zoneHours / 24 + zoneMinutes / 1440);
   const origin =
     daysOf({ year: part(2), month: part(3), day: part(4), hour: part(5), minute: part(6), second: part(7) }, calendar) -
     shift;

@@ -23,7 +23,8 @@ export function rowWeights(lat: Float64Array): Float64Array {
     const inner = i === 0 ? (lat[1] as number) : (lat[n - 2] as number);
     const spacing = Math.abs(outer - inner);
     const pole = i === 0 ? -90 : 90;
-    return Math.abs(pole - outer) < spacing ? pole : outer + (outer - inner) / 2;
+    // With slack, so that a last row just one spacing from the pole weighs the same however it was stored.
+    return Math.abs(pole - outer) < spacing - LAT_TOLERANCE ? pole : outer + (outer - inner) / 2;
   };
   for (let i = 0; i < n; i++)
     weights[i] = Math.sin(edge(i + 1) * RADIANS_PER_DEGREE) - Math.sin(edge(i) * RADIANS_PER_DEGREE);

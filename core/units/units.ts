@@ -37,7 +37,7 @@ const TABLE: Readonly<
     units: "gpm",
     rows: [
       [
-        "m2 s-2|m**2 s**-2|m^2 s^-2|m2/s2|m**2/s**2|m^2/s^2|m2 s^-2|m^2/s2|m s-1 m s-1|j kg-1|j/kg|j kg**-1|j kg^-1",
+        "m2 s-2|m**2 s**-2|m^2 s^-2|m2/s2|m**2/s**2|m^2/s^2|m2 s^-2|m^2/s2|m2.s-2|m s-1 m s-1|j kg-1|j/kg|j kg**-1|j kg^-1",
         1 / STANDARD_GRAVITY,
       ],
     ],
@@ -56,7 +56,7 @@ const TABLE: Readonly<
   temperature: {
     units: "K",
     rows: [
-      ["k|kelvin|kelvins|degk|deg_k|degree_kelvin|degrees_kelvin", 1],
+      ["k|kelvin|kelvins|degk|deg_k|degree_k|degrees_k|degree_kelvin|degrees_kelvin", 1],
       [
         "c|degc|deg_c|°c|celsius|degree_c|degrees_c|degree_celsius|degrees_celsius|degree celsius|degrees celsius",
         1,
@@ -90,7 +90,8 @@ function plain(spelling: string): string {
     .trim()
     .toLowerCase()
     .replace(/[\s_]+/g, (gap) => (gap.includes("_") ? "_" : " "))
-    .replace(/⁻/g, "-")
+    .replace(/[⁻−]/g, "-")
+    .replace(/[·⋅]/g, ".")
     .replace(/¹/g, "1")
     .replace(/²/g, "2");
 }

@@ -386,4 +386,65 @@ describe("files", () => {
     await page.context().close();
     await own.stop();
   });
+
+  test("an ensemble in GRIB: the member and level that are chosen, as batch has them", async (context) => {
+    const data = process.env.ISOHYPSE_DATA ?? join(ROOT, "../shared/data");
+    const file = join(data, "era5_eda_z_t_3deg_10memb.grib");
+    if (!existsSync(file)) return context.skip(`${file} is not there`);
+    const own = await startApp([file]);
+    const { page, errors } = await openPage(browser, own.url);
+    await settled(page);
+    const before = await numberIn(page, "wave-2-amplitude");
+    await page.locator(testId("choose-member")).selectOption("7");
+    await expect.poll(() => numberIn(page, "wave-2-amplitude")).not.toBe(before);
+    const atFirst = await numberIn(page, "wave-2-amplitude");
+    await page.locator(testId("choose-level")).selectOption("850");
+    await expect.poll(() => numberIn(page, "wave-2-amplitude")).not.toBe(atFirst);
+    await settled(page);
+    const recipe = await downloaded(page, async () => {
+      await page.keyboard.press("e");
+      await page.locator(testId("export-recipe")).click();
+    });
+    expect(JSON.parse(recipe.bytes.toString()).results[0]).toMatchObject({ level: 850, member: 7 });
+    const out = join(folder, "ensemble");
+    const run = spawnSync(process.execPath, [join(ROOT, "app/launch/batch.mjs"), recipe.path, file, "--out", out], {
+      encoding: "utf8",
+    });
+    expect(run.status, run.stderr).toBe(0);
+    const [head = "", ...lines] = readFileSync(join(out, "waves.csv"), "utf8").trim().split("\n");
+    const column = (name: string): number => head.split(",").findIndex((one) => one.startsWith(name));
+    const rows = lines.map((line) => line.split(","));
+    for (const k of [1, 2, 3, 4]) {
+      const row = rows.find(
+        (cells) =>
+          cells[column("member")] === "7" &&
+          cells[column("time")] === "2017-01-02T12:00:00Z" &&
+          Number(cells[column("wavenumber")]) === k,
+      ) as string[];
+      expect(await numberIn(page, `wave-${k}-amplitude`)).toBe(Number(row[column("amplitude")]));
+    }
+    expect(errors).toEqual([]);
+    await page.context().close();
+    await own.stop();
+  });
+
+  test("netCDF-4 and a damaged GRIB file through the file input: what is whole is read, what is lost is told", async (context) => {
+    const data = process.env.ISOHYPSE_DATA ?? join(ROOT, "../shared/data");
+    const [four, damaged] = [
+      join(data, "sresa1b_ncar_ccsm3-example.4.nc"),
+      join(data, "era5_corrupted_second_msg.grib"),
+    ];
+    if (!existsSync(four) || !existsSync(damaged)) return context.skip(`${four} or ${damaged} is not there`);
+    const { page, errors } = await openPage(browser, app.url);
+    await settled(page);
+    await page.locator(testId("file-input")).setInputFiles([four, damaged]);
+    await expect.poll(() => textOf(page, "do-files")).toContain("2 files");
+    await page.keyboard.press("f");
+    const files = await textOf(page, "card-files");
+    expect(files).toContain("netCDF-4 (HDF5)");
+    expect(files).toContain("the message at byte 0 is damaged");
+    expect(files).toContain("17 levels, 1000 to 10 hPa");
+    expect(errors).toEqual([]);
+    await page.context().close();
+  });
 });

@@ -281,7 +281,7 @@ function drawTexts(drawing: Drawing, missing: Plane | null): void {
                 text: maskWords,
                 width: pen.measureText(maskWords).width + 16,
                 height: 18,
-                places: missingPlaces(map, missing),
+                places: missingPlaces(map, missing, pen.measureText(maskWords).width + 16),
               },
             ];
       return { peakLabels, reason, all: [...reason, ...peakLabels, ...numbers] };

@@ -69,7 +69,7 @@ function drawStripFrame(
  * The departure along the band: round the rim of the disc, or in the strip under the belt; filled by sign, with the leading
  * wave in its colour and a triangle at each of its ridges.
  *
- * @param lon Degrees east of the values, evenly spaced.
+ * @param lon Degrees east of the values, evenly spaced; a region's do not go round, and nothing is drawn beyond them.
  */
 export function drawRim(
   pen: Pen,
@@ -106,14 +106,21 @@ export function drawRim(
   }
   // Once round from the map's first longitude, in steps of a column.
   const n = lon.length;
-  const columnWidth = 360 / n;
+  const own = n > 1 ? ((lon[n - 1] as number) - (lon[0] as number)) / (n - 1) : 360;
+  const closes = Math.abs(own * n - 360) < own / 4;
+  const columnWidth = closes ? 360 / n : own;
   const value = (degrees: number): number => {
     const x = ((((degrees - (lon[0] as number)) % 360) + 360) % 360) / columnWidth;
+    // A region has no curve beyond its ends.
+    if (!closes && x > n - 1) return Number.NaN;
     const west = Math.floor(x) % n;
     const share = x - Math.floor(x);
     return (rim.values[west] as number) * (1 - share) + (rim.values[(west + 1) % n] as number) * share;
   };
-  const places = Array.from({ length: n + 1 }, (_, i) => map.firstLon + i * columnWidth);
+  const places = Array.from(
+    { length: Math.round(360 / columnWidth) + 1 },
+    (_, i) => map.firstLon + Math.min(360, i * columnWidth),
+  );
   for (const sign of [1, -1]) {
     pen.beginPath();
     places.forEach((degrees, i) => {

@@ -89,23 +89,36 @@ function onDrawing(plane: Plane, points: Float64Array): Float64Array {
 const PLACE_SPACING = 12;
 const MOST_PLACES = 60;
 
-/** Missing places on the map, the one nearest the middle of all of them first. */
+/**
+ * Missing places on the map, the one nearest the middle of all of them first.
+ *
+ * @param width px of what is to be written there: its ends must be missing places, too.
+ */
 export function missingPlaces(
   map: ChartMap,
   plane: Plane,
+  width = 0,
 ): readonly { readonly x: number; readonly y: number; readonly angle: 0 }[] {
   const places: { x: number; y: number; angle: 0 }[] = [];
+  const isMissing = (x: number, y: number): boolean => {
+    const i = Math.round((x - plane.x0) / plane.spacing);
+    const j = Math.round((y - plane.y0) / plane.spacing);
+    const isInside = i >= 0 && i < plane.width && j >= 0 && j < plane.height;
+    return isInside && Number.isNaN(plane.values[j * plane.width + i] as number) && map.lonLat(x, y) !== null;
+  };
   const stride = Math.max(1, Math.round(PLACE_SPACING / plane.spacing));
   for (let j = 0; j < plane.height; j += stride)
     for (let i = 0; i < plane.width; i += stride) {
       const x = plane.x0 + i * plane.spacing;
       const y = plane.y0 + j * plane.spacing;
-      if (Number.isNaN(plane.values[j * plane.width + i] as number) && map.lonLat(x, y) !== null)
-        places.push({ x, y, angle: 0 });
+      if (isMissing(x, y)) places.push({ x, y, angle: 0 });
     }
   const mean = (read: (place: { x: number; y: number }) => number): number =>
     places.reduce((sum, place) => sum + read(place), 0) / Math.max(1, places.length);
   const mx = mean(({ x }) => x);
   const my = mean(({ y }) => y);
-  return places.sort((a, b) => Math.hypot(a.x - mx, a.y - my) - Math.hypot(b.x - mx, b.y - my)).slice(0, MOST_PLACES);
+  const roomy = places.filter(({ x, y }) => isMissing(x - width / 2, y) && isMissing(x + width / 2, y));
+  return (roomy.length > 0 ? roomy : places)
+    .sort((a, b) => Math.hypot(a.x - mx, a.y - my) - Math.hypot(b.x - mx, b.y - my))
+    .slice(0, MOST_PLACES);
 }

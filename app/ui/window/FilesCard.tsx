@@ -79,7 +79,7 @@ function stepsText({ steps }: FieldDescription): string {
 }
 
 function membersText({ members }: FieldDescription): string {
-  return members === null ? "" : `${members.length} members, `;
+  return members === null ? "" : `${members.length} member${members.length === 1 ? "" : "s"}, `;
 }
 
 function startText({ reference, steps }: FieldDescription): string {
@@ -125,7 +125,8 @@ function FileSection({ file }: { readonly file: FileContents }) {
       <h3>
         {file.file}{" "}
         <span className="note">
-          {file.format}, {numberText(file.bytes / 1e6, 1)} MB
+          {file.format},{" "}
+          {file.bytes < 1e5 ? `${numberText(file.bytes / 1e3, 1)} kB` : `${numberText(file.bytes / 1e6, 1)} MB`}
         </span>
         <button type="button" className="plain" onClick={() => void session.closeFile(file.file)}>
           Close file

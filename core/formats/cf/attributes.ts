@@ -19,5 +19,6 @@ export function numbersOf(attributes: Attributes, name: string): readonly number
 
 /** What people call a variable. */
 export function longName(variable: StoredVariable): string {
-  return textOf(variable.attributes, "long_name") ?? textOf(variable.attributes, "standard_name") ?? variable.name;
+  // An empty text says no more than none.
+  return textOf(variable.attributes, "long_name") || textOf(variable.attributes, "standard_name") || variable.name;
 }

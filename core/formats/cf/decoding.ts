@@ -13,6 +13,16 @@ export interface Decoding {
 }
 
 const BITS = { int8: 8, int16: 16, int32: 32 } as const;
+/** What whole numbers of a type can be; 64-bit ones hold any limit that comes up. */
+const SPANS: Readonly<Record<string, readonly [least: number, most: number]>> = {
+  int8: [-(2 ** 7), 2 ** 7 - 1],
+  uint8: [0, 2 ** 8 - 1],
+  int16: [-(2 ** 15), 2 ** 15 - 1],
+  uint16: [0, 2 ** 16 - 1],
+  int32: [-(2 ** 31), 2 ** 31 - 1],
+  uint32: [0, 2 ** 32 - 1],
+};
+const LIMIT_SLACK = 1e-6; // of a whole number: a limit divided by a scale factor is rounded by far less
 /** Values that the netCDF library writes where nothing was written (netcdf.h, NC_FILL_*); bytes have none. */
 const DEFAULT_FILL: Readonly<Record<string, number>> = {
   int16: -32_767,
@@ -21,7 +31,41 @@ const DEFAULT_FILL: Readonly<Record<string, number>> = {
   float64: 9.969209968386869e36,
   uint16: 65_535,
   uint32: 4_294_967_295,
+  // As float64, which is how they are read.
+  int64: -(2 ** 63),
+  uint64: 2 ** 64,
 };
+
+/**
+ * Least and most of the numbers as they stand in the file.
+ *
+ * Limits that whole numbers of the stored type cannot be are of the unpacked values (NetCDF Users Guide, appendix A: limits of
+ * the wider type of scale_factor are in the units of the unpacked data).
+ */
+function storedLimits(
+  { attributes, type }: StoredVariable,
+  wrap: number,
+  scale: number,
+  offset: number,
+): { least: number; most: number } {
+  const range = numbersOf(attributes, "valid_range");
+  // A limit of NaN limits nothing, as nothing is less or more than it.
+  const limit = (value: number | undefined, none: number): number =>
+    value === undefined || Number.isNaN(value) ? none : value;
+  const least = limit(range[0] ?? numbersOf(attributes, "valid_min")[0], Number.NEGATIVE_INFINITY);
+  const most = limit(range[1] ?? numbersOf(attributes, "valid_max")[0], Number.POSITIVE_INFINITY);
+  if (type === "float32") return { least: Math.fround(least), most: Math.fround(most) };
+  const [lowest, highest] = SPANS[type] ?? [Number.NEGATIVE_INFINITY, Number.POSITIVE_INFINITY];
+  const isStored = (value: number): boolean =>
+    !Number.isFinite(value) ||
+    (Number.isInteger(value) && value >= lowest && value <= (wrap === 0 ? highest : wrap - 1));
+  if (type in SPANS && !(isStored(least) && isStored(most))) {
+    const [a, b] = [(least - offset) / scale, (most - offset) / scale];
+    return { least: Math.ceil(Math.min(a, b) - LIMIT_SLACK), most: Math.floor(Math.max(a, b) + LIMIT_SLACK) };
+  }
+  const read = (value: number): number => (wrap !== 0 && value < 0 && Number.isFinite(value) ? value + wrap : value);
+  return { least: read(least), most: read(most) };
+}
 
 /** Read from a variable's attributes as the CF conventions (2.5.1, 8.1) and the NetCDF Users Guide (appendix A) say. */
 export function decodingOf(variable: StoredVariable): Decoding {
@@ -31,21 +75,20 @@ export function decodingOf(variable: StoredVariable): Decoding {
   const fill = own.length > 0 || fallback === undefined ? own : [fallback];
   const unsigned = textOf(attributes, "_Unsigned")?.toLowerCase() === "true" && type in BITS;
   const wrap = unsigned ? 2 ** BITS[type as keyof typeof BITS] : 0;
-  const range = numbersOf(attributes, "valid_range");
+  const scale = numbersOf(attributes, "scale_factor")[0] ?? 1;
+  const offset = numbersOf(attributes, "add_offset")[0] ?? 0;
   // Attributes may be written wider than the data (1e20 as a double beside floats, 255 beside unsigned bytes) or as signed as they are.
   const stored = (value: number): number =>
     type === "float32" ? Math.fround(value) : wrap !== 0 && value >= wrap / 2 ? value - wrap : value;
-  const read = (value: number): number => (wrap !== 0 && value < 0 && Number.isFinite(value) ? value + wrap : value);
   return {
     // A fill value of NaN on whole numbers never matches, and on real ones NaN is missing anyway.
     missing: [...new Set([...fill, ...numbersOf(attributes, "missing_value")].map(stored))].filter(
       (value) => !Number.isNaN(value),
     ),
-    least: read(range[0] ?? numbersOf(attributes, "valid_min")[0] ?? Number.NEGATIVE_INFINITY),
-    most: read(range[1] ?? numbersOf(attributes, "valid_max")[0] ?? Number.POSITIVE_INFINITY),
+    ...storedLimits(variable, wrap, scale, offset),
     wrap,
-    scale: numbersOf(attributes, "scale_factor")[0] ?? 1,
-    offset: numbersOf(attributes, "add_offset")[0] ?? 0,
+    scale,
+    offset,
   };
 }
 

@@ -41,13 +41,10 @@ export function orderedColumns(stored: Float64Array, where: string): OrderedAxis
   const values = falls ? stored.slice().reverse() : stored.slice();
   let turns = 0;
   for (let i = 1; i < n; i++) {
-    let value = (values[i] as number) + turns;
-    if (value <= (values[i - 1] as number) && turns === 0) {
-      turns = 360;
-      value += 360;
-    }
-    values[i] = value;
-    if (!(value > (values[i - 1] as number)))
+    // The jump goes back by more than half the circle; less is disorder.
+    if ((values[i] as number) < (values[i - 1] as number) - 180 && turns === 0) turns = 360;
+    values[i] = (values[i] as number) + turns;
+    if (!((values[i] as number) > (values[i - 1] as number)))
       throw new DataError("GridError", `${where}: longitudes do not run one way at column ${i}.`);
   }
   const first = values[0] as number;

@@ -1,9 +1,14 @@
 import { DataError } from "../../errors.ts";
 import type { Levels } from "../../field/axes.ts";
-import { acceptedSpellings, conversion } from "../../units/units.ts";
+import { acceptedSpellings, type Conversion, conversion } from "../../units/units.ts";
 import type { StoredVariable, VariableStore } from "../variable-store.ts";
 import { longName, numbersOf, textOf } from "./attributes.ts";
 import { axisValues } from "./step-axis.ts";
+
+/** hPa without the last digits that a conversion leaves: 70 Pa · 0.01 is 0.7000000000000001. */
+function hectopascals(value: number, { factor }: Conversion): number {
+  return Math.round(value * factor * 1e9) / 1e9;
+}
 
 /** Pressures of a level axis, hPa. @throws MetadataError if it is no pressure: such a field is left out, with the reason. */
 export async function levelAxis(
@@ -25,7 +30,7 @@ export async function levelAxis(
       "MetadataError",
       `level ${bad + 1} of its ${values.length} (${name}) is ${values[bad]}, no pressure`,
     );
-  return values.map((value) => Math.round(value * found.factor * 1e9) / 1e9);
+  return values.map((value) => hectopascals(value, found));
 }
 
 /** The pressure of a field without a level axis: a scalar coordinate, else its attributes, else its name. */
@@ -39,7 +44,7 @@ export async function statedLevel(store: VariableStore, variable: StoredVariable
     const found = conversion("pressure", textOf(candidate.attributes, "units") ?? "");
     if (found === null) continue;
     const [value] = await axisValues(store, candidate);
-    if (value !== undefined && Number.isFinite(value)) return Float64Array.of(value * found.factor);
+    if (value !== undefined && value > 0 && Number.isFinite(value)) return Float64Array.of(hectopascals(value, found));
   }
   for (const attribute of ["level", "pressure", "pressure_level"]) {
     const [value] = numbersOf(variable.attributes, attribute);

@@ -22,6 +22,9 @@ export interface WrittenFile {
 
 const TYPE = { int8: 1, char: 2, int16: 3, int32: 4, float32: 5, float64: 6 } as const;
 const LARGEST_CDF1 = 2 ** 31 - 4;
+/** Only the last variable of a 64-bit offset file may hold more: its size is a 32-bit number for all others. */
+const LARGEST_VARIABLE = 2 ** 32 - 4;
+const LONGEST_DIMENSION = 2 ** 31 - 4;
 /** Bytes that are turned round at a time, so that no second copy of a large variable is made. */
 const PIECE = 1024 * 1024;
 
@@ -120,10 +123,10 @@ function paddedBytes(data: WrittenNumbers): number {
 
 function checkFile(file: WrittenFile): void {
   for (const [name, length] of Object.entries(file.dimensions))
-    if (!Number.isInteger(length) || length < 1)
+    if (!Number.isInteger(length) || length < 1 || length > LONGEST_DIMENSION)
       throw new DataError("ShapeError", `Dimension ${name} of length ${length} cannot be written.`);
   const seen = new Set<string>();
-  for (const { name, dims, data } of file.variables) {
+  file.variables.forEach(({ name, dims, data }, i) => {
     if (seen.has(name)) throw new DataError("ShapeError", `Variable ${name} would be written twice.`);
     seen.add(name);
     const unknown = dims.find((dim) => !Object.hasOwn(file.dimensions, dim));
@@ -135,7 +138,12 @@ function checkFile(file: WrittenFile): void {
         "ShapeError",
         `Variable ${name} has ${data.length} values; its dimensions ${dims.join(", ")} hold ${size}.`,
       );
-  }
+    if (data.byteLength > LARGEST_VARIABLE && i < file.variables.length - 1)
+      throw new DataError(
+        "ShapeError",
+        `Variable ${name} has ${data.byteLength} bytes; netCDF 64-bit offset holds ${LARGEST_VARIABLE} of each but the last. Write it in pieces, or last.`,
+      );
+  });
 }
 
 /**
@@ -144,7 +152,7 @@ function checkFile(file: WrittenFile): void {
  * Source: NetCDF Classic Format Specification (Unidata).
  *
  * @param isFleeting True where each piece is done with before the next is asked for: they then share memory.
- * @throws ShapeError, before the first piece, if a variable does not fit its dimensions.
+ * @throws ShapeError, before the first piece, if a variable does not fit its dimensions or is too large for the format.
  */
 export function* classicFile(file: WrittenFile, isFleeting = false): Generator<Uint8Array<ArrayBuffer>, void> {
   checkFile(file);

@@ -42,12 +42,56 @@ describe("row weights", () => {
   });
 });
 
+describe("row weights of other grids", () => {
+  test("any rows that reach within a spacing of both poles share the whole sphere, each its positive part", () => {
+    const anyRows = fc
+      .uniqueArray(fc.integer({ min: -179, max: 179 }), { minLength: 1, maxLength: 60 })
+      .map((halves) => [-90, ...halves.map((half) => half / 2).sort((a, b) => a - b), 90]);
+    fc.assert(
+      fc.property(anyRows, (lat) => {
+        const weights = rowWeights(Float64Array.from(lat));
+        expect(Math.abs(weights.reduce((a, b) => a + b, 0) - 2)).toBeLessThanOrEqual(lat.length * 2 ** -52);
+        for (const weight of weights) expect(weight).toBeGreaterThan(0);
+      }),
+    );
+  });
+
+  test("rows half a spacing from the poles reach them; rows one spacing from them do not, however they are stored", () => {
+    const rad = Math.PI / 180;
+    expect(rowWeights(even(-89.5, 1, 180))[0]).toBeCloseTo(1 - Math.sin(89 * rad), 15);
+    for (const step of [1, 1.2, 0.7, 2.5]) {
+      const n = 2 * Math.round(90 / step - 1) + 1;
+      const lat = Array.from({ length: n }, (_, i) => (i - (n - 1) / 2) * step);
+      const spared = 90 - (lat.at(-1) as number);
+      if (Math.abs(spared - step) > 1e-9) continue; // 0.7 does not divide 90
+      const own = rowWeights(Float64Array.from(lat));
+      const single = rowWeights(Float64Array.from(lat, Math.fround));
+      expect(own[n - 1]).toBeCloseTo(Math.sin((90 - step / 2) * rad) - Math.sin((90 - 1.5 * step) * rad), 14);
+      // float32 moves a latitude under 128° by 2⁻¹⁸° at most, and an edge, which is half a spacing beyond, by twice that;
+      // the sine changes by less than that in radians.
+      for (let i = 0; i < n; i++)
+        expect(Math.abs((single[i] as number) - (own[i] as number))).toBeLessThanOrEqual(4 * 2 ** -18 * rad);
+    }
+  });
+});
+
 describe("nearest", () => {
   test("rows: of two equally near, the one nearer the equator", () => {
     const lat = even(-90, 2.5, 73);
     expect(lat[nearestRow(lat, 61.25)]).toBe(60);
     expect(lat[nearestRow(lat, -61.25)]).toBe(-60);
     expect(lat[nearestRow(lat, 61.26)]).toBe(62.5);
+    // Also where float32 has moved the rows: 0.7 and 1.4 are 0.69999999 and 1.39999998 there
+    const stored = Float64Array.from(even(-90, 0.7, 258), Math.fround);
+    for (let i = 129; i < 257; i++) {
+      const between = ((stored[i] as number) + (stored[i + 1] as number)) / 2 + 1e-6;
+      const expected = Math.abs(stored[i] as number) <= Math.abs(stored[i + 1] as number) ? i : i + 1;
+      expect(nearestRow(stored, between)).toBe(expected);
+    }
+    // The two rows beside the equator are equally near to both it and the equator: the southern stands first.
+    expect(nearestRow(Float64Array.of(-1.25, 1.25), 0)).toBe(0);
+    expect(nearestRow(Float64Array.of(50), -80)).toBe(0);
+    expect(lat[nearestRow(lat, 1000)]).toBe(90);
   });
 
   test("columns go round the circle; of two equally near, the western", () => {
@@ -87,6 +131,12 @@ describe("bands", () => {
       "The band 50.5° to 51°N holds no row. The grid's rows run from -90.00° to 90.00°N.",
     );
     expect(() => rowsOfBand(even(30, 2.5, 10), [10, 10])).toThrow("There is no row near 10°N");
+    expect(() => rowsOfBand(even(30, 2.5, 10), [10, 10])).toThrow(expect.objectContaining({ name: "GridError" }));
+    expect(() => rowsOfBand(lat, [60, 50])).toThrow("The band 60° to 50°N holds no row");
+    expect(() => rowsOfBand(lat, [Number.NaN, 50])).not.toThrow();
+    // A row's spacing beyond the last is still that row.
+    expect(rowsOfBand(even(30, 2.5, 10), [28, 28])).toEqual([0, 1]);
+    expect(rowsOfBand(Float64Array.of(50), [50, 60])).toEqual([0, 1]);
   });
 });
 
@@ -115,7 +165,37 @@ describe("circles", () => {
     uneven[2] = 185;
     expect(isEven(uneven)).toBe(false);
     expect(() => requireCircle(grid(uneven), "Zonal waves")).toThrow("are not evenly spaced");
+    expect(() => requireCircle(grid(uneven), "Zonal waves")).toThrow(expect.objectContaining({ name: "GridError" }));
+    expect(() => requireCircle(grid(even(-30, 1, 60)), "Waves")).toThrow("its 60 columns run from -30.00° to 29.00°E");
   });
+});
+
+test("fewer than three columns are no circle, and say nothing of their spacing", () => {
+  for (const lon of [[], [0], [0, 180]]) {
+    expect(closesCircle(Float64Array.from(lon))).toBe(false);
+    expect(isEven(Float64Array.from(lon))).toBe(true);
+  }
+  expect(closesCircle(Float64Array.of(0, 120, 240))).toBe(true);
+  expect(() => requireCircle({ lat: Float64Array.of(0), lon: even(0, 120, 3), closesCircle: true }, "")).not.toThrow();
+  // The finest grid in use, 0.025°, with one column missing: every step could be within its tolerance.
+  const fine = even(0, 360 / 14_399, 14_399);
+  expect(closesCircle(fine)).toBe(true);
+  expect(closesCircle(even(0, 0.025, 14_399))).toBe(false);
+});
+
+test("the smallest Gaussian grids are those of Abramowitz & Stegun 1964, table 25.4", () => {
+  for (const [parallels, zeros] of [
+    [1, [0.577_350_269_189_626]],
+    [2, [0.339_981_043_584_856, 0.861_136_311_594_053]],
+    [4, [0.183_434_642_495_65, 0.525_532_409_916_329, 0.796_666_477_413_627, 0.960_289_856_497_536]],
+  ] as const) {
+    const sines = [...gaussianLatitudes(parallels)].map((lat) => Math.sin((lat * Math.PI) / 180));
+    // Fifteen places are printed.
+    const want = [...zeros.toReversed().map((x) => -x), ...zeros];
+    sines.forEach((x, i) => {
+      expect(Math.abs(x - (want[i] as number))).toBeLessThanOrEqual(1e-15);
+    });
+  }
 });
 
 test("Gaussian latitudes are numpy's", () => {

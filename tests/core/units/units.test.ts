@@ -41,10 +41,18 @@ describe("spellings", () => {
     ["wind", "M S-1"],
     ["wind", "  m   s-1 "],
     ["wind", "m s⁻¹"],
+    ["wind", "m·s⁻¹"],
+    ["wind", "m⋅s−1"],
     ["geopotential", "m² s⁻²"],
+    ["geopotential", "m²·s⁻²"],
+    ["geopotential", "m²/s²"],
     ["geopotential", "m2  s-2"],
     ["height", "Geopotential Metres"],
     ["temperature", "degree_Celsius"],
+    ["temperature", "degree  Celsius"],
+    ["temperature", "deg_K"],
+    ["temperature", "degree_K"],
+    ["wind", "\tm/s\n"],
     ["pressure", "HPA"],
     ["pressure", "hectopascals"],
   ] as const)("%s: %j is known", (kind, spelling) => {
@@ -54,6 +62,18 @@ describe("spellings", () => {
   test.each([
     ["wind", "m"],
     ["wind", "mph"],
+    ["wind", "ms-1"],
+    ["wind", "s m-1"],
+    ["wind", "m s-2"],
+    ["wind", "m s⁻³"],
+    ["geopotential", "m s-1"],
+    ["height", "geopotential"],
+    ["height", "10 m"],
+    ["height", "constructor"],
+    ["height", "__proto__"],
+    ["temperature", "K s-1"],
+    ["pressure", "mmHg"],
+    ["pressure", "MPa"],
     ["height", "feet"],
     ["height", ""],
     ["temperature", "F"],
@@ -63,10 +83,23 @@ describe("spellings", () => {
     expect(conversion(kind, spelling)).toBeNull();
   });
 
+  test("each kind has one unit inside, and it is its own", () => {
+    for (const [kind, units] of [
+      ["height", "gpm"],
+      ["wind", "m s-1"],
+      ["temperature", "K"],
+      ["pressure", "hPa"],
+    ] as const)
+      expect(conversion(kind, units)).toEqual({ units, factor: 1, offset: 0 });
+    // Geopotential is turned into height.
+    expect(conversion("geopotential", "m2 s-2")?.units).toBe("gpm");
+  });
+
   test("what a spelling can stand for, and what messages offer", () => {
     expect(kindsOf("m")).toEqual(["height"]);
     expect(kindsOf("m2/s2")).toEqual(["geopotential"]);
-    expect(kindsOf("furlong")).toEqual([]);
+    expect(["m s-1", "K", "mb", "furlong", ""].map(kindsOf)).toEqual([["wind"], ["temperature"], ["pressure"], [], []]);
+    expect(conversion("weight" as UnitKind, "kg")).toBeNull();
     for (const kind of ["height", "geopotential", "wind", "temperature", "pressure"] as const)
       for (const spelling of acceptedSpellings(kind).split(", "))
         expect(conversion(kind, spelling), spelling).not.toBeNull();
