@@ -76,7 +76,8 @@ export function rowsOfBand(lat: Float64Array, band: readonly [number, number]): 
     return [row, row + 1];
   }
   let from = 0;
-  while (from < lat.length && (lat[from] as number) < south - LAT_TOLERANCE) from += 1;
+  // Turned round so that a band with an end of NaN holds no row.
+  while (from < lat.length && !((lat[from] as number) >= south - LAT_TOLERANCE)) from += 1;
   let to = from;
   while (to < lat.length && (lat[to] as number) <= north + LAT_TOLERANCE) to += 1;
   if (from === to)

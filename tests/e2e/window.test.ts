@@ -396,10 +396,10 @@ describe("files", () => {
     await settled(page);
     const before = await numberIn(page, "wave-2-amplitude");
     await page.locator(testId("choose-member")).selectOption("7");
-    await expect.poll(() => numberIn(page, "wave-2-amplitude")).not.toBe(before);
+    await expect.poll(() => numberIn(page, "wave-2-amplitude"), { timeout: 15_000 }).not.toBe(before);
     const atFirst = await numberIn(page, "wave-2-amplitude");
     await page.locator(testId("choose-level")).selectOption("850");
-    await expect.poll(() => numberIn(page, "wave-2-amplitude")).not.toBe(atFirst);
+    await expect.poll(() => numberIn(page, "wave-2-amplitude"), { timeout: 15_000 }).not.toBe(atFirst);
     await settled(page);
     const recipe = await downloaded(page, async () => {
       await page.keyboard.press("e");
@@ -438,7 +438,7 @@ describe("files", () => {
     const { page, errors } = await openPage(browser, app.url);
     await settled(page);
     await page.locator(testId("file-input")).setInputFiles([four, damaged]);
-    await expect.poll(() => textOf(page, "do-files")).toContain("2 files");
+    await expect.poll(() => textOf(page, "do-files"), { timeout: 15_000 }).toContain("2 files");
     await page.keyboard.press("f");
     const files = await textOf(page, "card-files");
     expect(files).toContain("netCDF-4 (HDF5)");

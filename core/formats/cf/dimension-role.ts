@@ -34,8 +34,8 @@ const NAMES: readonly (readonly [RegExp, DimensionRole])[] = [
  */
 export function dimensionRole(name: string, coordinate: StoredVariable | undefined): DimensionRole {
   const attributes = coordinate?.attributes ?? {};
-  const standard = STANDARD_NAMES[textOf(attributes, "standard_name") ?? ""];
-  if (standard !== undefined) return standard;
+  const standard = textOf(attributes, "standard_name") ?? "";
+  if (Object.hasOwn(STANDARD_NAMES, standard)) return STANDARD_NAMES[standard] as DimensionRole;
   const byName = NAMES.find(([pattern]) => pattern.test(name))?.[1];
   const units = textOf(attributes, "units") ?? "";
   if (LAT_UNITS.test(units)) return "latitude";

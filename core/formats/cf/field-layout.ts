@@ -180,7 +180,8 @@ export async function fieldLayouts(
   const rest = variable.dims
     .map((_, d) => d)
     .filter((d) => ![latDim, lonDim, levelDim, memberDim, stepDim, startDim].includes(d) && variable.shape[d] !== 1);
-  if (stepDim < 0 && rest.length === 1) stepDim = rest.pop() as number;
+  // What is left steps if it is nothing else: a second latitude is no step.
+  if (stepDim < 0 && rest.length === 1 && roles[rest[0] as number] === "other") stepDim = rest.pop() as number;
   if (rest.length > 0) {
     const words = rest.map((d) => `${variable.dims[d]} of ${variable.shape[d]}`).join(", ");
     throw new DataError(

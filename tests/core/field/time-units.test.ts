@@ -14,7 +14,7 @@ describe("units of time since a moment (CF conventions 4.4, after UDUNITS)", () 
     ["day since 1900-01-01 06", 0.25, 1],
     ["h since +1900-01-01 00:00 UTC", 0, 1 / 24],
     ["  days   SINCE 1900-01-01 00:00:30 GMT ", 30 / 86_400, 1],
-    // A zone ahead of Greenwich has its midnight earlier: the example of CF 4.4 is "… 00:00:00 -6:00", six hours behind.
+    // A zone ahead of Greenwich has its midnight earlier.
     ["d since 1900-01-01 00:00:00 +2:00", -2 / 24, 1],
     ["hr since 1900-01-01 00:00 -0530", 5.5 / 24, 1 / 24],
     ["hr since 1900-01-01 00:00 +530", -5.5 / 24, 1 / 24],
@@ -25,6 +25,13 @@ describe("units of time since a moment (CF conventions 4.4, after UDUNITS)", () 
     // The last place of 25 567 days is 2⁻³⁸; both sides are rounded a few times.
     expect(Math.abs(units.origin - EPOCH - shift)).toBeLessThanOrEqual(2 ** -37);
     expect(units.daysPerUnit).toBe(perUnit);
+  });
+
+  test("the example of CF 4.4: six hours west of UTC, 15:15:42.5 is 21:15:42.5", () => {
+    const { origin, daysPerUnit: perUnit } = timeUnits("seconds since 1992-10-8 15:15:42.5 -6:00", "standard");
+    const utc = daysOf({ year: 1992, month: 10, day: 8, hour: 21, minute: 15, second: 42.5 }, "standard");
+    expect(Math.abs(origin - utc)).toBeLessThanOrEqual(2 ** -38); // the last place of 8316 days is 2⁻⁴⁰; a few roundings
+    expect(perUnit).toBe(1 / 86_400);
   });
 
   test.each([

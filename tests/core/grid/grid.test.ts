@@ -59,11 +59,9 @@ describe("row weights of other grids", () => {
   test("rows half a spacing from the poles reach them; rows one spacing from them do not, however they are stored", () => {
     const rad = Math.PI / 180;
     expect(rowWeights(even(-89.5, 1, 180))[0]).toBeCloseTo(1 - Math.sin(89 * rad), 15);
-    for (const step of [1, 1.2, 0.7, 2.5]) {
+    for (const step of [1, 1.2, 0.6, 2.5]) {
       const n = 2 * Math.round(90 / step - 1) + 1;
       const lat = Array.from({ length: n }, (_, i) => (i - (n - 1) / 2) * step);
-      const spared = 90 - (lat.at(-1) as number);
-      if (Math.abs(spared - step) > 1e-9) continue; // 0.7 does not divide 90
       const own = rowWeights(Float64Array.from(lat));
       const single = rowWeights(Float64Array.from(lat, Math.fround));
       expect(own[n - 1]).toBeCloseTo(Math.sin((90 - step / 2) * rad) - Math.sin((90 - 1.5 * step) * rad), 14);
@@ -133,7 +131,8 @@ describe("bands", () => {
     expect(() => rowsOfBand(even(30, 2.5, 10), [10, 10])).toThrow("There is no row near 10°N");
     expect(() => rowsOfBand(even(30, 2.5, 10), [10, 10])).toThrow(expect.objectContaining({ name: "GridError" }));
     expect(() => rowsOfBand(lat, [60, 50])).toThrow("The band 60° to 50°N holds no row");
-    expect(() => rowsOfBand(lat, [Number.NaN, 50])).not.toThrow();
+    expect(() => rowsOfBand(lat, [Number.NaN, 50])).toThrow("holds no row");
+    expect(() => rowsOfBand(lat, [50, Number.NaN])).toThrow("holds no row");
     // A row's spacing beyond the last is still that row.
     expect(rowsOfBand(even(30, 2.5, 10), [28, 28])).toEqual([0, 1]);
     expect(rowsOfBand(Float64Array.of(50), [50, 60])).toEqual([0, 1]);

@@ -216,6 +216,7 @@ describe("what is left out, and why", () => {
 
   test("no latitude, no values, further dimensions, curvilinear grids, heights above ground", async () => {
     expect(await why(await odd(["time", "lon"], 8))).toContain("it has no latitude axis");
+    expect(await why(await odd(["lat", "lat", "lon"], 36))).toContain("it has a further dimension, lat of 3");
     expect(await why(await odd(["a", "b", "lat", "lon"], 48))).toContain("it has a further dimension, a of 2, b of 2");
     const two = (name: string, units: string) => ({
       name,
