@@ -5,12 +5,14 @@ import type { ByteSource } from "../byte-source.ts";
 const SMALL = 4096;
 /** Fetched together where messages are small, or padding is looked through. */
 const LARGE = 65_536;
+const READS_AT_ONCE = 32;
 
 /** Small pieces of a file, read through one window that moves along. */
 export class HeaderWindow {
   readonly #source: ByteSource;
   #bytes: Uint8Array = new Uint8Array(0);
   #from = 0;
+  #reads = 0;
   /** Set where a message is shorter than a large window: then several headers come at once. */
   isDense = false;
 
@@ -33,7 +35,11 @@ export class HeaderWindow {
     const start = at - this.#from;
     if (start < 0 || start + length > this.#bytes.length) {
       const some = Math.max(length, this.isDense ? LARGE : SMALL);
-      this.#bytes = await this.#source.read(at, Math.min(some, this.size - at));
+      const fetched = Math.min(some, this.size - at);
+      this.#reads += 1;
+      // At once: tens of thousands of small reads take a tenth of the time so. Now and then the thread is let go, for whoever asks it.
+      const isWaiting = this.#reads % READS_AT_ONCE === 0;
+      this.#bytes = isWaiting ? await this.#source.read(at, fetched) : this.#source.readNow(at, fetched);
       this.#from = at;
       return this.#bytes.subarray(0, length);
     }
