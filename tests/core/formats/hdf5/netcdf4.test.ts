@@ -136,6 +136,12 @@ test("plain HDF5: dimensions by length, and what is no field is left out in word
   expect(store.notes.join(" ")).toContain("half is of 2 bytes");
 });
 
+test("szip is unpacked", async () => {
+  const store = await opened("szip.h5");
+  // The very numbers that reference/make_files.py put in
+  expect([...(await whole(store, "packed"))]).toEqual(Array.from({ length: 48 }, (_, i) => i * 0.5));
+});
+
 test("a filter that is not read is named before anything is read", async () => {
   const store = await opened("filtered.h5");
   await expect(store.readNumbers("scaled", [0], [4])).rejects.toThrow(

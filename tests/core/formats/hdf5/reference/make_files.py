@@ -91,6 +91,12 @@ def plain_hdf5() -> None:
         file["gone"] = h5py.SoftLink("/nothing")
 
 
+def szip() -> None:
+    """Packed by szip, which h5py's HDF5 may or may not have."""
+    with h5py.File(HERE / "szip.h5", "w") as file:
+        file.create_dataset("packed", data=(np.arange(48) * 0.5).reshape(6, 8).astype("f4"), chunks=(3, 8), compression="szip")
+
+
 def filtered() -> None:
     """Packed by a filter that only its author has: a dataset whose chunk says so."""
     with h5py.File(HERE / "filtered.h5", "w") as file:
@@ -134,6 +140,7 @@ types()
 packed()
 groups()
 plain_hdf5()
+szip()
 filtered()
 held = {name: contents(HERE / name) for name in ["types.nc", "packed.nc", "groups.nc"]}
 # One file in every container
